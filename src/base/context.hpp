@@ -1,0 +1,79 @@
+#pragma once
+
+#include <atomic>
+#include <cstdint>
+#include <exception>
+#include <memory>
+#include <optional>
+#include <stop_token>
+#include <string>
+
+namespace chainmark {
+
+/// Bytes that big arrays may take together. Thread safe.
+class MemoryBudget {
+public:
+    explicit MemoryBudget(double bytes) : limit_(bytes) {}
+
+    /// Releases its bytes when it goes out of scope.
+    class Lease {
+    public:
+        Lease(MemoryBudget& budget, double bytes) : budget_(&budget), bytes_(bytes) {}
+        Lease(Lease&& other) noexcept : budget_(other.budget_), bytes_(other.bytes_) {
+            other.budget_ = nullptr;
+        }
+        Lease(const Lease&) = delete;
+        Lease& operator=(const Lease&) = delete;
+        Lease& operator=(Lease&&) = delete;
+        ~Lease();
+
+    private:
+        MemoryBudget* budget_;
+        double bytes_;
+    };
+
+    /// Nothing where the bytes do not fit beside what is already taken.
+    std::optional<Lease> take(double bytes);
+
+    double limit() const { return limit_; }
+
+private:
+    double limit_;
+    std::atomic<double> taken_{0.0};
+};
+
+/// Bytes the system says are free for new processes (Linux MemAvailable); 4 GiB where unknown.
+double available_memory();
+
+/// Hears about finished work. The unit of `work` is estimated seconds. Thread safe.
+class Progress {
+public:
+    Progress() = default;
+    Progress(const Progress&) = delete;
+    Progress& operator=(const Progress&) = delete;
+    virtual ~Progress() = default;
+    virtual void begin(double total_work) = 0;
+    virtual void advance(double work, const std::string& what) = 0;
+    virtual void end() = 0;
+};
+
+/// What a computation may use, and how it is told to stop.
+struct Context {
+    int threads = 1;  ///< for the computation that is handed this context
+    std::shared_ptr<MemoryBudget> memory;
+    std::stop_token stop;
+    std::shared_ptr<Progress> progress;  ///< may be null
+};
+
+/// Thrown by `poll` inside a computation, caught where the computation was started.
+struct Interrupted : std::exception {
+    const char* what() const noexcept override { return "interrupted"; }
+};
+
+/// Throws Interrupted once a stop was requested. Every loop calls it at least once a second.
+void poll(const Context& context);
+
+/// Number of threads that BLAS and LAPACK use from now on, in the whole process.
+void set_blas_threads(int threads);
+
+}  // namespace chainmark

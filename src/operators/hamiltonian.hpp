@@ -1,0 +1,68 @@
+#pragma once
+
+#include <complex>
+#include <span>
+#include <string>
+#include <string_view>
+#include <vector>
+
+#include "chainmark/base/error.hpp"
+#include "chainmark/operators/chain.hpp"
+#include "chainmark/operators/term_list.hpp"
+
+/// From families and written terms to a canonical term list on a given chain.
+namespace chainmark {
+
+/// What happens where a short ring brings two placements of one term onto the same set of sites.
+enum class Coincident {
+    refuse,  ///< the default: the meaning differs from author to author
+    add,     ///< both placements count
+    once,    ///< each set of sites counts once
+};
+
+/// A term with numbers filled in: sum over placements of coupling * product of site operators.
+struct PlacedTerm {
+    std::vector<SiteMatrix> factors;             ///< leftmost first
+    std::vector<int> offsets;                    ///< one per factor, from the placement's first site
+    std::vector<std::complex<double>> coupling;  ///< one for all placements, or one per placement
+    bool fixed = false;                          ///< a single placement: `offsets` are the sites
+    bool add_conjugate = false;
+};
+
+/// A parameter of a family.
+struct FamilyParameter {
+    std::string name;
+    std::string sentence;
+};
+
+/// A named Hamiltonian, sum over bonds j between sites j and j+1, without its field.
+struct Family {
+    std::string name;
+    std::string formula;  ///< as text, for people
+    std::string remark;   ///< one sentence: what it is known for, where its critical point lies
+    std::vector<FamilyParameter> parameters;  ///< those without a default: every one is required
+    /// The terms for the given parameter values (in the order of `parameters`) on `chain`.
+    std::vector<PlacedTerm> (*terms)(std::span<const double> values, const Chain& chain);
+    int cell = 1;           ///< sites after which the couplings repeat
+    int smallest_ring = 3;  ///< sites below which a ring's bonds coincide
+};
+
+/// Every family, in the order in which they are shown. All take the field h besides:
+/// -h sum_j Sz_j, 0 by default.
+std::span<const Family> families();
+
+/// nullptr for an unknown name.
+const Family* find_family(std::string_view name);
+
+/// Number of placements of a term on `chain`: L on a ring, L - range on an open chain, `cell` on
+/// the infinite chain, 1 for a fixed term.
+int placement_count(const PlacedTerm& term, const Chain& chain, int cell);
+
+/// The canonical list of all `terms`. Fails (`bad_chain`) where the chain is too short for a term
+/// or placements coincide and `coincident` refuses, and where the sum is not Hermitian.
+Result<TermList> build_terms(const Chain& chain,
+                             std::span<const PlacedTerm> terms,
+                             Coincident coincident,
+                             int cell);
+
+}  // namespace chainmark

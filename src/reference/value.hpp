@@ -1,0 +1,99 @@
+#pragma once
+
+#include <complex>
+#include <cstdint>
+#include <optional>
+#include <string>
+#include <utility>
+#include <variant>
+#include <vector>
+
+namespace chainmark {
+
+enum class Kind { number, array, text };
+
+/// What stands in the place of a number that does not exist.
+enum class Special { none, infinite, minus_infinite, jump, undefined };
+
+/// "infinite", "-infinite", "jump", "undefined"; empty for `none`.
+std::string to_string(Special special);
+
+/// The answer to a query at a point.
+struct Value {
+    Kind kind = Kind::number;
+    std::vector<std::size_t> shape;          ///< arrays: extent of each axis
+    std::vector<std::complex<double>> data;  ///< one element for a number, none for a text
+    std::vector<Special> special;            ///< empty, or one entry per element of `data`
+    std::string text;
+    bool complex = false;  ///< false: imaginary parts are zero by definition
+    /// jump_fields: total Sz below the first field, between neighbours, above the last.
+    std::vector<double> total_sz;
+
+    static Value number(double x);
+    static Value status(Special special);
+    static Value array(const std::vector<double>& x);
+    static Value words(std::string text);
+
+    /// Special::none where element i is an ordinary number.
+    Special special_at(std::size_t i) const { return special.empty() ? Special::none : special[i]; }
+    double real_at(std::size_t i) const { return data[i].real(); }
+};
+
+/// How the error bound of a reference is known, best first.
+enum class Basis { exact, enclosure, residual, rounding, estimate };
+std::string to_string(Basis basis);
+
+/// How it is known that no level below the last one is missing from a level list.
+enum class Completeness { proved, tested, not_shown };
+std::string to_string(Completeness completeness);
+
+/// Quantum numbers of one level; absent where not resolved.
+struct Labels {
+    std::optional<double> sz;
+    std::optional<int> momentum;  ///< n of k = (2 pi n + twist N_up)/L, -L/2 < n <= L/2
+    std::optional<int> parity;    ///< of the up count, +1 or -1, where only that is conserved
+};
+
+/// Smallest and largest expectation value in a degenerate ground space, one pair an element.
+using Range = std::vector<std::pair<double, double>>;
+
+enum class RouteId { sector, dense, fermion, limit };
+std::string to_string(RouteId route);
+
+/// How a finite chain's value comes near the infinite one's.
+struct Approach {
+    enum class Law {
+        power,     ///< |difference| ~ L^-exponent, sizes of one parity
+        envelope,  ///< |difference| <= c L^-exponent, oscillating below: c is reported, nothing fitted
+    };
+    Law law = Law::power;
+    double exponent = 0.0;
+};
+
+/// A value by one route, with an absolute error bound on each element.
+struct Reference {
+    Value value;
+    std::vector<double> bound;  ///< one per element of value.data
+    Basis basis = Basis::estimate;
+    std::optional<Completeness> complete;     ///< level lists and degeneracies
+    std::optional<std::int64_t> degeneracy;   ///< dimension of the ground space
+    std::optional<Range> range;
+    std::vector<Labels> labels;               ///< level lists: one a level, or empty
+    std::optional<Approach> approach;         ///< route `limit` beside a finite chain
+    RouteId route = RouteId::sector;
+    double seconds = 0.0;
+};
+
+/// The route does not reach this quantity here.
+struct NotCovered {
+    std::string reason;
+};
+
+/// The route reaches it, but has no answer it can stand for.
+struct Undecided {
+    std::string reason;
+};
+
+using Answer = std::variant<Reference, NotCovered, Undecided>;
+
+}  // namespace chainmark
