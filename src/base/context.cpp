@@ -2,7 +2,10 @@
 
 #include <fstream>
 
-extern "C" void openblas_set_num_threads(int threads);
+extern "C" {
+void openblas_set_num_threads(int threads);
+int openblas_get_num_threads();
+}
 
 namespace chainmark {
 
@@ -43,6 +46,12 @@ void poll(const Context& context) {
     }
 }
 
-void set_blas_threads(int threads) { openblas_set_num_threads(threads); }
+BlasThreads::BlasThreads(int threads) : before_(openblas_get_num_threads()) {
+    openblas_set_num_threads(threads);
+}
+
+BlasThreads::~BlasThreads() {
+    openblas_set_num_threads(before_);
+}
 
 }  // namespace chainmark

@@ -73,7 +73,18 @@ struct Interrupted : std::exception {
 /// Throws Interrupted once a stop was requested. Every loop calls it at least once a second.
 void poll(const Context& context);
 
-/// Number of threads that BLAS and LAPACK use from now on, in the whole process.
-void set_blas_threads(int threads);
+/// Sets the number of threads that BLAS and LAPACK use, in the whole process, and puts the old
+/// number back when it goes out of scope. Threads that do this at the same time must all set the
+/// number that is in force.
+class BlasThreads {
+public:
+    explicit BlasThreads(int threads);
+    BlasThreads(const BlasThreads&) = delete;
+    BlasThreads& operator=(const BlasThreads&) = delete;
+    ~BlasThreads();
+
+private:
+    int before_;
+};
 
 }  // namespace chainmark

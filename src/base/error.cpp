@@ -1,8 +1,8 @@
 #include "chainmark/base/error.hpp"
 
-#include <fmt/format.h>
-
 #include <stdexcept>
+
+#include <fmt/format.h>
 
 namespace chainmark {
 

@@ -1,8 +1,9 @@
 #pragma once
 
 #include <string>
-#include <tl/expected.hpp>
 #include <vector>
+
+#include <tl/expected.hpp>
 
 namespace chainmark {
 

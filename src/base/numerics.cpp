@@ -1,9 +1,9 @@
 #include "chainmark/base/numerics.hpp"
 
-#include <fmt/format.h>
-
 #include <charconv>
 #include <string>
+
+#include <fmt/format.h>
 
 namespace chainmark {
 
@@ -18,6 +18,29 @@ std::int64_t binomial(int n, int k) {
         value = value * (n - k + i) / i;
     }
     return static_cast<std::int64_t>(value);
+}
+
+double accurate_dot(std::span<const double> a, std::span<const double> b) {
+    long double sum = 0;
+    for (std::size_t i = 0; i < a.size(); ++i) {
+        sum += static_cast<long double>(a[i]) * static_cast<long double>(b[i]);
+    }
+    return static_cast<double>(sum);
+}
+
+std::complex<double> accurate_dot(std::span<const std::complex<double>> a,
+                                  std::span<const std::complex<double>> b) {
+    long double real = 0;
+    long double imaginary = 0;
+    for (std::size_t i = 0; i < a.size(); ++i) {
+        const long double ar = a[i].real();
+        const long double ai = a[i].imag();
+        const long double br = b[i].real();
+        const long double bi = b[i].imag();
+        real += ar * br + ai * bi;
+        imaginary += ar * bi - ai * br;
+    }
+    return {static_cast<double>(real), static_cast<double>(imaginary)};
 }
 
 double round_to_15_digits(double value) {

@@ -1,8 +1,8 @@
 #include "chainmark/base/words.hpp"
 
-#include <fmt/format.h>
-
 #include <algorithm>
+
+#include <fmt/format.h>
 
 namespace chainmark {
 namespace {

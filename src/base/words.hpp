@@ -12,7 +12,8 @@ namespace chainmark {
 /// neighbours), or an empty string where none is closer than about a third of its length.
 std::string nearest_word(std::string_view word, std::span<const std::string> allowed);
 
-/// "did you mean 'boundary'? (allowed: sites, boundary, spin)"; the question only where a word is near.
+/// "did you mean 'boundary'? (allowed: sites, boundary, spin)"; the question only where a word is
+/// near.
 std::string suggestion(std::string_view word, const std::vector<std::string>& allowed);
 
 /// "a, b, c"

@@ -24,8 +24,8 @@ struct Chain {
     /// The number of sites. Needs a finite chain.
     int length() const { return sites.value(); }
 
-    /// exp(-i twist), the factor of a raising operator carried once around the ring; exactly +-1 for
-    /// twist = 0 and pi.
+    /// exp(-i twist), the factor of a raising operator carried once around the ring; exactly +-1
+    /// for twist = 0 and pi.
     std::complex<double> wrap_phase() const;
 
     bool operator==(const Chain&) const = default;

@@ -1,11 +1,11 @@
 #include "chainmark/operators/hamiltonian.hpp"
 
-#include <fmt/format.h>
-
 #include <algorithm>
 #include <array>
 #include <numeric>
 #include <set>
+
+#include <fmt/format.h>
 
 namespace chainmark {
 namespace {
@@ -22,13 +22,17 @@ std::vector<PlacedTerm> exchange(double x, double y, double z, int distance = 1)
             bond(SiteMatrix::sz(), SiteMatrix::sz(), z, distance)};
 }
 
-std::vector<PlacedTerm> xx_terms(Values v, const Chain&) { return exchange(v[0], v[0], 0.0); }
+std::vector<PlacedTerm> xx_terms(Values v, const Chain&) {
+    return exchange(v[0], v[0], 0.0);
+}
 
 std::vector<PlacedTerm> xy_terms(Values v, const Chain&) {
     return exchange(v[0] * (1 + v[1]), v[0] * (1 - v[1]), 0.0);
 }
 
-std::vector<PlacedTerm> tfim_terms(Values v, const Chain&) { return exchange(v[0], 0.0, 0.0); }
+std::vector<PlacedTerm> tfim_terms(Values v, const Chain&) {
+    return exchange(v[0], 0.0, 0.0);
+}
 
 std::vector<PlacedTerm> xxz_terms(Values v, const Chain&) {
     return exchange(v[0], v[0], v[0] * v[1]);
@@ -129,12 +133,13 @@ Error coinciding(const std::set<int>& sites, const Chain& chain) {
 
 }  // namespace
 
-std::span<const Family> families() { return family_table; }
+std::span<const Family> families() {
+    return family_table;
+}
 
 const Family* find_family(std::string_view name) {
-    const auto at = std::find_if(family_table.begin(), family_table.end(), [&](const Family& f) {
-        return f.name == name;
-    });
+    const auto at = std::find_if(
+        family_table.begin(), family_table.end(), [&](const Family& f) { return f.name == name; });
     return at == family_table.end() ? nullptr : &*at;
 }
 

@@ -22,8 +22,8 @@ enum class Coincident {
 
 /// A term with numbers filled in: sum over placements of coupling * product of site operators.
 struct PlacedTerm {
-    std::vector<SiteMatrix> factors;             ///< leftmost first
-    std::vector<int> offsets;                    ///< one per factor, from the placement's first site
+    std::vector<SiteMatrix> factors;  ///< leftmost first
+    std::vector<int> offsets;         ///< one per factor, from the placement's first site
     std::vector<std::complex<double>> coupling;  ///< one for all placements, or one per placement
     bool fixed = false;                          ///< a single placement: `offsets` are the sites
     bool add_conjugate = false;

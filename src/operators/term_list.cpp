@@ -1,9 +1,9 @@
 #include "chainmark/operators/term_list.hpp"
 
-#include <fmt/format.h>
-
 #include <algorithm>
 #include <cmath>
+
+#include <fmt/format.h>
 
 #include "chainmark/base/numerics.hpp"
 
@@ -121,13 +121,25 @@ TermList with_field(const TermList& list, double field, int length) {
     return result;
 }
 
-SiteMatrix SiteMatrix::identity() { return {{1.0, 0.0, 0.0, 1.0}}; }
-SiteMatrix SiteMatrix::sx() { return {{0.0, 0.5, 0.5, 0.0}}; }
+SiteMatrix SiteMatrix::identity() {
+    return {{1.0, 0.0, 0.0, 1.0}};
+}
+SiteMatrix SiteMatrix::sx() {
+    return {{0.0, 0.5, 0.5, 0.0}};
+}
 // Sy = (S+ - S-)/(2i): <u|Sy|d> = -i/2.
-SiteMatrix SiteMatrix::sy() { return {{0.0, Complex(0, 0.5), Complex(0, -0.5), 0.0}}; }
-SiteMatrix SiteMatrix::sz() { return {{-0.5, 0.0, 0.0, 0.5}}; }
-SiteMatrix SiteMatrix::raising() { return {{0.0, 0.0, 1.0, 0.0}}; }
-SiteMatrix SiteMatrix::lowering() { return {{0.0, 1.0, 0.0, 0.0}}; }
+SiteMatrix SiteMatrix::sy() {
+    return {{0.0, Complex(0, 0.5), Complex(0, -0.5), 0.0}};
+}
+SiteMatrix SiteMatrix::sz() {
+    return {{-0.5, 0.0, 0.0, 0.5}};
+}
+SiteMatrix SiteMatrix::raising() {
+    return {{0.0, 0.0, 1.0, 0.0}};
+}
+SiteMatrix SiteMatrix::lowering() {
+    return {{0.0, 1.0, 0.0, 0.0}};
+}
 
 SiteMatrix operator*(const SiteMatrix& a, const SiteMatrix& b) {
     SiteMatrix c;

@@ -1,8 +1,8 @@
 #pragma once
 
 #include <array>
-#include <complex>
 #include <compare>
+#include <complex>
 #include <cstdint>
 #include <map>
 #include <optional>

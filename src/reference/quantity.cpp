@@ -25,9 +25,7 @@ const std::array<QuantitySpec, 13> table = {{
      .name = "levels",
      .sentence = "the `count` lowest levels of the full spectrum, every copy counted",
      .options = {OptionId::count}},
-    {.id = QuantityId::spectrum,
-     .name = "spectrum",
-     .sentence = "all 2^L levels, ascending"},
+    {.id = QuantityId::spectrum, .name = "spectrum", .sentence = "all 2^L levels, ascending"},
     {.id = QuantityId::magnetization,
      .name = "magnetization",
      .sentence = "(1/L) sum_j <Sz_j>, averaged over the ground space",
@@ -38,29 +36,34 @@ const std::array<QuantitySpec, 13> table = {{
      .options = {OptionId::axis}},
     {.id = QuantityId::susceptibility,
      .name = "susceptibility",
-     .sentence = "dm/dh' at h' = 0 of an added -h' sum_j Sz_j; on a finite chain that conserves Sz it "
-                 "is 0 between jumps and has the status `jump` at one",
+     .sentence =
+         "dm/dh' at h' = 0 of an added -h' sum_j Sz_j; on a finite chain that conserves Sz it "
+         "is 0 between jumps and has the status `jump` at one",
      .where = Where::both},
     {.id = QuantityId::jump_fields,
      .name = "jump_fields",
-     .sentence = "the h of a uniform -h sum_j Sz_j (the family's own h set to 0) at which the total Sz "
-                 "of the ground state changes, ascending, with the total Sz between them",
+     .sentence =
+         "the h of a uniform -h sum_j Sz_j (the family's own h set to 0) at which the total Sz "
+         "of the ground state changes, ascending, with the total Sz between them",
      .per_chain = true},
     {.id = QuantityId::spin_correlation,
      .name = "spin_correlation",
-     .sentence = "<Sz_i Sz_j> for `pairs`, or for each `distance` r the mean over all i the boundary "
-                 "allows; `connected` subtracts <Sz_i><Sz_j>",
+     .sentence =
+         "<Sz_i Sz_j> for `pairs`, or for each `distance` r the mean over all i the boundary "
+         "allows; `connected` subtracts <Sz_i><Sz_j>",
      .where = Where::both,
      .options = {OptionId::axes, OptionId::distance, OptionId::pairs, OptionId::connected}},
     {.id = QuantityId::mode_energies,
      .name = "mode_energies",
-     .sentence = "single-particle energies of the fermions, signed and ascending; on a ring for the "
-                 "`parity` of the up count (default: the ground state's)",
+     .sentence =
+         "single-particle energies of the fermions, signed and ascending; on a ring for the "
+         "`parity` of the up count (default: the ground state's)",
      .options = {OptionId::parity}},
     {.id = QuantityId::fermi_momentum,
      .name = "fermi_momentum",
-     .sentence = "k in [0, pi] at which the single-particle energy vanishes; undefined for a band that "
-                 "is full or empty",
+     .sentence =
+         "k in [0, pi] at which the single-particle energy vanishes; undefined for a band that "
+         "is full or empty",
      .where = Where::infinite},
     {.id = QuantityId::phase,
      .name = "phase",
@@ -70,7 +73,9 @@ const std::array<QuantitySpec, 13> table = {{
 
 }  // namespace
 
-std::span<const QuantitySpec> quantities() { return table; }
+std::span<const QuantitySpec> quantities() {
+    return table;
+}
 
 const QuantitySpec* find_quantity(std::string_view name) {
     const auto at = std::find_if(

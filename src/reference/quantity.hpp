@@ -37,7 +37,8 @@ struct QuantitySpec {
     std::string sentence;  ///< the definition, for `show quantities`
     Where where = Where::finite;
     std::vector<OptionId> options = {};
-    bool per_chain = false;  ///< one answer for all fields of a chain (the family's own h is set to 0)
+    bool per_chain =
+        false;  ///< one answer for all fields of a chain (the family's own h is set to 0)
     std::string on_infinite = {};  ///< the quantity to ask for instead at sites = "infinite"
 };
 
@@ -55,12 +56,12 @@ enum class Parity { ground_state, even, odd };
 
 /// The options of one query. Those that the quantity does not take keep their defaults.
 struct Options {
-    int count = 1;                          ///< levels: how many
-    Axis axis = Axis::z;                    ///< local_magnetization
-    std::vector<int> distance = {};         ///< spin_correlation: an array over these ...
+    int count = 1;                                ///< levels: how many
+    Axis axis = Axis::z;                          ///< local_magnetization
+    std::vector<int> distance = {};               ///< spin_correlation: an array over these ...
     std::vector<std::pair<int, int>> pairs = {};  ///< ... or over these pairs of sites
-    bool connected = false;                 ///< subtract <A_i><B_j>
-    Parity parity = Parity::ground_state;   ///< mode_energies
+    bool connected = false;                       ///< subtract <A_i><B_j>
+    Parity parity = Parity::ground_state;         ///< mode_energies
     bool operator==(const Options&) const = default;
 };
 

@@ -49,9 +49,9 @@ std::string to_string(Completeness completeness);
 
 /// Quantum numbers of one level; absent where not resolved.
 struct Labels {
-    std::optional<double> sz;
-    std::optional<int> momentum;  ///< n of k = (2 pi n + twist N_up)/L, -L/2 < n <= L/2
-    std::optional<int> parity;    ///< of the up count, +1 or -1, where only that is conserved
+    std::optional<double> sz = {};
+    std::optional<int> momentum = {};  ///< n of k = (2 pi n + twist N_up)/L, -L/2 < n <= L/2
+    std::optional<int> parity = {};    ///< of the up count, +1 or -1, where only that is conserved
 };
 
 /// Smallest and largest expectation value in a degenerate ground space, one pair an element.
@@ -64,7 +64,8 @@ std::string to_string(RouteId route);
 struct Approach {
     enum class Law {
         power,     ///< |difference| ~ L^-exponent, sizes of one parity
-        envelope,  ///< |difference| <= c L^-exponent, oscillating below: c is reported, nothing fitted
+        envelope,  ///< |difference| <= c L^-exponent, oscillating below: c is reported, nothing
+                   ///< fitted
     };
     Law law = Law::power;
     double exponent = 0.0;
@@ -75,11 +76,11 @@ struct Reference {
     Value value;
     std::vector<double> bound;  ///< one per element of value.data
     Basis basis = Basis::estimate;
-    std::optional<Completeness> complete;     ///< level lists and degeneracies
-    std::optional<std::int64_t> degeneracy;   ///< dimension of the ground space
+    std::optional<Completeness> complete;    ///< level lists and degeneracies
+    std::optional<std::int64_t> degeneracy;  ///< dimension of the ground space
     std::optional<Range> range;
-    std::vector<Labels> labels;               ///< level lists: one a level, or empty
-    std::optional<Approach> approach;         ///< route `limit` beside a finite chain
+    std::vector<Labels> labels;        ///< level lists: one a level, or empty
+    std::optional<Approach> approach;  ///< route `limit` beside a finite chain
     RouteId route = RouteId::sector;
     double seconds = 0.0;
 };

@@ -1,0 +1,151 @@
+#include "chainmark/base/hermitian_eigen.hpp"
+
+#include <cmath>
+#include <stdexcept>
+#include <vector>
+
+#include <fmt/format.h>
+
+extern "C" {
+void dsyevd_(const char* job,
+             const char* triangle,
+             const int* n,
+             double* a,
+             const int* lda,
+             double* w,
+             double* work,
+             const int* lwork,
+             int* iwork,
+             const int* liwork,
+             int* info);
+void zheevd_(const char* job,
+             const char* triangle,
+             const int* n,
+             std::complex<double>* a,
+             const int* lda,
+             double* w,
+             std::complex<double>* work,
+             const int* lwork,
+             double* rwork,
+             const int* lrwork,
+             int* iwork,
+             const int* liwork,
+             int* info);
+}
+
+namespace chainmark {
+namespace {
+
+void check(int info, const char* routine) {
+    if (info != 0) {
+        throw std::runtime_error(fmt::format("LAPACK {} failed with info = {}", routine, info));
+    }
+}
+
+}  // namespace
+
+HermitianEigen<double> hermitian_eigen(Eigen::MatrixXd matrix) {
+    const int n = static_cast<int>(matrix.rows());
+    HermitianEigen<double> result;
+    result.values.resize(n);
+    int info = 0;
+    int query = -1;
+    double work_size = 0;
+    int iwork_size = 0;
+    dsyevd_("V",
+            "L",
+            &n,
+            matrix.data(),
+            &n,
+            result.values.data(),
+            &work_size,
+            &query,
+            &iwork_size,
+            &query,
+            &info);
+    check(info, "dsyevd");
+    const int lwork = static_cast<int>(work_size);
+    std::vector<double> work(static_cast<std::size_t>(lwork));
+    std::vector<int> iwork(static_cast<std::size_t>(iwork_size));
+    dsyevd_("V",
+            "L",
+            &n,
+            matrix.data(),
+            &n,
+            result.values.data(),
+            work.data(),
+            &lwork,
+            iwork.data(),
+            &iwork_size,
+            &info);
+    check(info, "dsyevd");
+    result.vectors = std::move(matrix);
+    return result;
+}
+
+HermitianEigen<std::complex<double>> hermitian_eigen(Eigen::MatrixXcd matrix) {
+    const int n = static_cast<int>(matrix.rows());
+    HermitianEigen<std::complex<double>> result;
+    result.values.resize(n);
+    int info = 0;
+    int query = -1;
+    std::complex<double> work_size = 0;
+    double rwork_size = 0;
+    int iwork_size = 0;
+    zheevd_("V",
+            "L",
+            &n,
+            matrix.data(),
+            &n,
+            result.values.data(),
+            &work_size,
+            &query,
+            &rwork_size,
+            &query,
+            &iwork_size,
+            &query,
+            &info);
+    check(info, "zheevd");
+    const int lwork = static_cast<int>(work_size.real());
+    const int lrwork = static_cast<int>(rwork_size);
+    std::vector<std::complex<double>> work(static_cast<std::size_t>(lwork));
+    std::vector<double> rwork(static_cast<std::size_t>(lrwork));
+    std::vector<int> iwork(static_cast<std::size_t>(iwork_size));
+    zheevd_("V",
+            "L",
+            &n,
+            matrix.data(),
+            &n,
+            result.values.data(),
+            work.data(),
+            &lwork,
+            rwork.data(),
+            &lrwork,
+            iwork.data(),
+            &iwork_size,
+            &info);
+    check(info, "zheevd");
+    result.vectors = std::move(matrix);
+    return result;
+}
+
+Eigen::VectorXd cluster_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& residuals) {
+    const Eigen::Index n = values.size();
+    Eigen::VectorXd bounds(n);
+    Eigen::Index first = 0;
+    while (first < n) {
+        double reach = values[first] + residuals[first];
+        double squares = residuals[first] * residuals[first];
+        Eigen::Index last = first + 1;
+        while (last < n && values[last] - residuals[last] <= reach) {
+            reach = std::max(reach, values[last] + residuals[last]);
+            squares += residuals[last] * residuals[last];
+            ++last;
+        }
+        bounds.segment(first, last - first).setConstant(std::sqrt(squares));
+        first = last;
+    }
+    return bounds;
+}
+
+}  // namespace chainmark

@@ -1,0 +1,163 @@
+#include "chainmark/dense/full_spectrum.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <map>
+#include <numeric>
+
+#include "chainmark/base/hermitian_eigen.hpp"
+#include "chainmark/base/numerics.hpp"
+
+namespace chainmark::dense {
+namespace {
+
+template <class Scalar>
+struct Size {
+    double row_sum = 0.0;  ///< largest sum of |elements| of a row, an upper bound of the 2-norm
+    int longest_row = 0;
+};
+
+template <class Scalar>
+Size<Scalar> size_of(const FullMatrix<Scalar>& matrix) {
+    Size<Scalar> size;
+    for (Eigen::Index row = 0; row < matrix.rows(); ++row) {
+        double sum = 0.0;
+        int count = 0;
+        for (typename FullMatrix<Scalar>::InnerIterator it(matrix, row); it; ++it) {
+            sum += std::abs(it.value());
+            ++count;
+        }
+        size.row_sum = std::max(size.row_sum, sum);
+        size.longest_row = std::max(size.longest_row, count);
+    }
+    return size;
+}
+
+/// [H, M]_{ab} = H_ab (M_b - M_a)
+template <class Scalar>
+bool commutes(const FullMatrix<Scalar>& matrix, const Eigen::VectorXd& total_sz) {
+    for (Eigen::Index row = 0; row < matrix.rows(); ++row) {
+        for (typename FullMatrix<Scalar>::InnerIterator it(matrix, row); it; ++it) {
+            if (it.value() != Scalar(0) && total_sz[it.row()] != total_sz[it.col()]) {
+                return false;
+            }
+        }
+    }
+    return true;
+}
+
+template <class Scalar>
+std::span<const Scalar> column(const Eigen::Matrix<Scalar, -1, -1>& matrix, Eigen::Index i) {
+    return {matrix.col(i).data(), static_cast<std::size_t>(matrix.rows())};
+}
+
+double real_part(double x) {
+    return x;
+}
+double real_part(std::complex<double> x) {
+    return x.real();
+}
+
+}  // namespace
+
+template <class Scalar>
+FullSpectrum<Scalar>::FullSpectrum(const Problem& problem, const Context& context)
+    : length_(problem.chain.length()), total_sz_(dense::total_sz(length_)) {
+    FullMatrix<Scalar> hamiltonian = full_matrix<Scalar>(problem.terms->terms, length_);
+    poll(context);
+    commutes_ = commutes(hamiltonian, total_sz_);
+    if (!commutes_) {
+        hamiltonian = full_matrix<Scalar>(full_terms(problem).terms, length_);
+    }
+    const double lift = commutes_ ? 2 * size_of(hamiltonian).row_sum + 1.0 : 0.0;
+    solve(hamiltonian, problem.terms->constant, lift);
+    poll(context);
+}
+
+template <class Scalar>
+void FullSpectrum<Scalar>::solve(const FullMatrix<Scalar>& hamiltonian,
+                                 double constant,
+                                 double lift) {
+    Vectors lifted = Vectors(hamiltonian);
+    lifted.diagonal() += (lift * total_sz_).template cast<Scalar>();
+    vectors_ = hermitian_eigen(std::move(lifted)).vectors;
+
+    // Energies are Rayleigh quotients with H itself, so the lift costs no digits; the residual is
+    // measured with H too. Its own rounding is at most (m + 2) u || |H| || for m elements a row.
+    const Eigen::Index n = vectors_.cols();
+    const Size<Scalar> size = size_of(hamiltonian);
+    const double noise = (size.longest_row + 2) * epsilon * size.row_sum;
+    energies_.resize(n);
+    residuals_.resize(n);
+    sz_.resize(n);
+    const Vectors image = hamiltonian * vectors_;
+    for (Eigen::Index i = 0; i < n; ++i) {
+        const double norm = real_part(accurate_dot(column(vectors_, i), column(vectors_, i)));
+        energies_[i] = real_part(accurate_dot(column(vectors_, i), column(image, i))) / norm;
+        const Scalar energy(energies_[i]);
+        residuals_[i] = (image.col(i) - energy * vectors_.col(i)).norm() / std::sqrt(norm) + noise;
+        sz_[i] = std::round(2 * vectors_.col(i).cwiseAbs2().dot(total_sz_)) / 2;
+    }
+    std::vector<Eigen::Index> order(static_cast<std::size_t>(n));
+    std::iota(order.begin(), order.end(), Eigen::Index{0});
+    std::sort(order.begin(), order.end(), [&](Eigen::Index a, Eigen::Index b) {
+        return energies_[a] < energies_[b];
+    });
+    const Eigen::VectorXd sorted = cluster_bounds(energies_(order), residuals_(order));
+    bounds_.resize(n);
+    bounds_(order) = sorted;
+    energies_.array() += constant;
+    bounds_.array() += epsilon * std::abs(constant);
+}
+
+template <class Scalar>
+std::vector<Level> FullSpectrum<Scalar>::levels(double field) const {
+    std::vector<Level> result;
+    result.reserve(static_cast<std::size_t>(energies_.size()));
+    for (Eigen::Index i = 0; i < energies_.size(); ++i) {
+        const double shift = commutes_ ? -field * sz_[i] : 0.0;
+        const double energy = energies_[i] + shift;
+        result.push_back({energy, bounds_[i] + epsilon * (std::abs(shift) + std::abs(energy)), i});
+    }
+    std::sort(result.begin(), result.end(), [](const Level& a, const Level& b) {
+        return a.energy < b.energy;
+    });
+    return result;
+}
+
+template <class Scalar>
+std::vector<typename FullSpectrum<Scalar>::SzMinimum> FullSpectrum<Scalar>::lowest_by_sz() const {
+    std::map<double, SzMinimum> lowest;
+    for (Eigen::Index i = 0; i < energies_.size(); ++i) {
+        const SzMinimum level = {sz_[i], energies_[i], bounds_[i]};
+        const auto [at, fresh] = lowest.emplace(sz_[i], level);
+        if (!fresh && level.energy < at->second.energy) {
+            at->second = level;
+        }
+    }
+    std::vector<SzMinimum> result;
+    for (const auto& [sz, level] : lowest) {
+        result.push_back(level);
+    }
+    return result;
+}
+
+template <class Scalar>
+Eigen::MatrixXcd FullSpectrum<Scalar>::elements(const FullMatrix<Scalar>& a,
+                                                const std::vector<Eigen::Index>& of) const {
+    const Eigen::Index n = static_cast<Eigen::Index>(of.size());
+    const Vectors states = vectors_(Eigen::all, of);
+    const Vectors image = a * states;
+    Eigen::MatrixXcd result(n, n);
+    for (Eigen::Index i = 0; i < n; ++i) {
+        for (Eigen::Index j = 0; j < n; ++j) {
+            result(i, j) = accurate_dot(column(states, i), column(image, j));
+        }
+    }
+    return result;
+}
+
+template class FullSpectrum<double>;
+template class FullSpectrum<std::complex<double>>;
+
+}  // namespace chainmark::dense

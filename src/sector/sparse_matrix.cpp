@@ -1,0 +1,123 @@
+#include "chainmark/sector/sparse_matrix.hpp"
+
+#include <algorithm>
+#include <cmath>
+
+#include "chainmark/base/error.hpp"
+#include "chainmark/base/numerics.hpp"
+
+namespace chainmark::sector {
+namespace {
+
+double conjugated(std::complex<double> x, double) {
+    return x.real();
+}
+std::complex<double> conjugated(std::complex<double> x, std::complex<double>) {
+    return std::conj(x);
+}
+
+/// Calls entry(column, value) for every element of one row. H is Hermitian, so the row of `state`
+/// is the conjugate of its column: where the strings take `state` to.
+template <class Scalar, class Entry>
+void visit_row(const SectorBasis& basis,
+               const std::vector<BitTerm>& terms,
+               std::uint64_t state,
+               Entry&& entry) {
+    std::size_t i = 0;
+    while (i < terms.size()) {
+        const std::uint64_t flip = terms[i].flip;
+        std::complex<double> sum = 0.0;
+        for (; i < terms.size() && terms[i].flip == flip; ++i) {
+            if (terms[i].acts_on(state)) {
+                sum += terms[i].amplitude(state);
+            }
+        }
+        if (sum != 0.0) {
+            entry(basis.rank(state ^ flip), conjugated(sum, Scalar{}));
+        }
+    }
+}
+
+}  // namespace
+
+template <class Scalar>
+SparseMatrix<Scalar> build_matrix(const SectorBasis& basis,
+                                  const std::vector<BitTerm>& terms,
+                                  int threads) {
+    const std::int64_t dim = basis.dim();
+    CHAINMARK_EXPECTS(dim <= std::numeric_limits<std::int32_t>::max());
+    SparseMatrix<Scalar> matrix;
+    matrix.row_start.assign(static_cast<std::size_t>(dim) + 1, 0);
+#pragma omp parallel for num_threads(threads) schedule(static)
+    for (std::int64_t row = 0; row < dim; ++row) {
+        std::int64_t count = 0;
+        visit_row<Scalar>(basis, terms, basis.state(row), [&](std::int64_t, Scalar) { ++count; });
+        matrix.row_start[static_cast<std::size_t>(row) + 1] = count;
+    }
+    for (std::size_t row = 0; row < static_cast<std::size_t>(dim); ++row) {
+        matrix.longest_row =
+            std::max(matrix.longest_row, static_cast<int>(matrix.row_start[row + 1]));
+        matrix.row_start[row + 1] += matrix.row_start[row];
+    }
+    matrix.column.resize(static_cast<std::size_t>(matrix.row_start.back()));
+    matrix.value.resize(matrix.column.size());
+    double largest = 0.0;
+#pragma omp parallel for num_threads(threads) schedule(static) reduction(max : largest)
+    for (std::int64_t row = 0; row < dim; ++row) {
+        std::size_t at = static_cast<std::size_t>(matrix.row_start[static_cast<std::size_t>(row)]);
+        double sum = 0.0;
+        visit_row<Scalar>(basis, terms, basis.state(row), [&](std::int64_t column, Scalar value) {
+            matrix.column[at] = static_cast<std::int32_t>(column);
+            matrix.value[at] = value;
+            sum += std::abs(value);
+            ++at;
+        });
+        largest = std::max(largest, sum);
+    }
+    matrix.row_sum = largest;
+    return matrix;
+}
+
+template <class Scalar>
+void SparseMatrix<Scalar>::apply(const Scalar* x, Scalar* y, int threads) const {
+    const std::int64_t rows = dim();
+#pragma omp parallel for num_threads(threads) schedule(static)
+    for (std::int64_t row = 0; row < rows; ++row) {
+        Scalar sum(0);
+        for (std::int64_t i = row_start[static_cast<std::size_t>(row)];
+             i < row_start[static_cast<std::size_t>(row) + 1];
+             ++i) {
+            const auto at = static_cast<std::size_t>(i);
+            sum += value[at] * x[column[at]];
+        }
+        y[row] = sum;
+    }
+}
+
+template <class Scalar>
+typename SparseMatrix<Scalar>::Dense SparseMatrix<Scalar>::as_dense() const {
+    Dense dense = Dense::Zero(dim(), dim());
+    for (std::size_t row = 0; row + 1 < row_start.size(); ++row) {
+        for (std::int64_t i = row_start[row]; i < row_start[row + 1]; ++i) {
+            const auto at = static_cast<std::size_t>(i);
+            dense(static_cast<Eigen::Index>(row), column[at]) += value[at];
+        }
+    }
+    return dense;
+}
+
+template <class Scalar>
+double SparseMatrix<Scalar>::residual_noise() const {
+    // |fl(Hv) - Hv| <= (m + 2) u |H||v| element by element, m the longest row, and ||(|H|)|| is at
+    // most the largest row sum.
+    return (longest_row + 2) * epsilon * row_sum;
+}
+
+template struct SparseMatrix<double>;
+template struct SparseMatrix<std::complex<double>>;
+template SparseMatrix<double> build_matrix(const SectorBasis&, const std::vector<BitTerm>&, int);
+template SparseMatrix<std::complex<double>> build_matrix(const SectorBasis&,
+                                                         const std::vector<BitTerm>&,
+                                                         int);
+
+}  // namespace chainmark::sector
