@@ -2,6 +2,7 @@
 
 #include <complex>
 #include <cstdint>
+#include <limits>
 #include <optional>
 #include <string>
 #include <variant>
@@ -41,8 +42,7 @@ struct RandomCoupling {
 };
 
 /// Numbers (one for all placements, or one per placement), a parameter, or random draws.
-using Coupling =
-    std::variant<std::vector<std::complex<double>>, ParameterCoupling, RandomCoupling>;
+using Coupling = std::variant<std::vector<std::complex<double>>, ParameterCoupling, RandomCoupling>;
 
 /// A [[hamiltonian.term]] as written.
 struct CaseTerm {

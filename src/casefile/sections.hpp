@@ -1,0 +1,71 @@
+#pragma once
+
+#include <set>
+#include <string>
+#include <vector>
+
+#include "chainmark/casefile/case.hpp"
+#include "chainmark/casefile/grid.hpp"
+#include "chainmark/casefile/reader.hpp"
+
+/// The tables of a case file, one function each. Each reports what is wrong in its table and fills
+/// in what is right; `check_case` then looks at what the tables say together.
+namespace chainmark {
+
+/// An axis with its rank in the file.
+struct WrittenAxis {
+    std::string name;
+    Position key;
+    Position at;
+    std::vector<GridValue> values;
+};
+
+/// A case under construction, with the places its finished form no longer has.
+struct Draft {
+    Case result;
+    std::vector<WrittenAxis> axes;
+    std::vector<std::string> parameters;    ///< names from [parameters]
+    std::set<std::string> used_parameters;  ///< those of them that a term names
+    bool terms_complete = true;             ///< false: a term could not be read
+    std::vector<Position> term_at;          ///< parallel to result.terms
+    std::vector<Position> coupling_at;      ///< parallel to result.terms
+    std::vector<Position> quantity_at;      ///< parallel to result.quantities
+    std::vector<Position> extent_at;        ///< ... of what must fit the chain in a quantity
+};
+
+/// Nothing is read where this fails: the meaning of every key depends on it.
+bool read_format(Reader& reader, const Table& root);
+
+void read_title(Reader& reader, const Table& root, Draft& draft);
+void read_system(Reader& reader, const Table& root, Draft& draft);
+void read_grid_section(Reader& reader, const Table& root, Draft& draft);
+void read_tolerance_section(Reader& reader, const Table& root, Draft& draft);
+void read_routes(Reader& reader, const Table& root, Draft& draft);
+
+/// [hamiltonian] and [parameters], which depend on each other.
+void read_hamiltonian(Reader& reader, const Table& root, Draft& draft);
+
+/// A [[hamiltonian.term]].
+void read_term(Reader& reader, const Node& node, Draft& draft);
+
+/// Every [[quantity]]; after [tolerance].
+void read_quantities(Reader& reader, const Table& root, Draft& draft);
+
+/// { absolute, relative }; what is absent keeps the value of `tolerance`.
+void read_tolerance(Reader& reader,
+                    const Table& table,
+                    const std::string& owner,
+                    Tolerance& tolerance);
+
+/// The table [name], nullptr where it is absent or no table.
+const Table* find_section(Reader& reader, const Table& root, const std::string& name);
+
+/// Reads a grid parameter and adds its axis.
+void read_axis(
+    Reader& reader, const Entry& entry, const std::string& owner, GridKind kind, Draft& draft);
+
+/// What no table can see alone: rings too short, quantities without a meaning at the given sites,
+/// values that occur twice, names that clash.
+void check_case(Reader& reader, const Draft& draft);
+
+}  // namespace chainmark
