@@ -298,45 +298,98 @@ private:
         result.range.reset();
     }
 
-    /// Ground-space averages of the operators, as entries of `shape`, with ranges. The error of an
-    /// average: the computed space is tilted from the exact one by at most residual / gap
-    /// (Davis and Kahan 1970), which moves it by at most 2 ||A|| times that.
+    /// Ground-space averages of the operators, as entries of `shape`, with ranges.
     Answer expectation(const std::vector<std::vector<Term>>& operators, Value shape) const {
-        std::vector<Eigen::Index> vectors;
-        double squares = 0.0;
-        for (std::size_t i = 0; i < ground_.degeneracy; ++i) {
-            vectors.push_back(ground_.levels[i].vector);
-            squares += std::pow(spectrum_.residual(vectors.back()), 2);
-        }
-        const double tilt = ground_.has_next() ? std::sqrt(squares) / ground_.gap() : 0.0;
+        const GroundStates states = ground_states();
         Range range;
         std::vector<double> bounds;
         for (std::size_t e = 0; e < operators.size(); ++e) {
-            double norm = 0.0;
-            for (const Term& term : operators[e]) {
-                norm += std::abs(term.coefficient) * std::pow(0.5, term.string.size());
+            const Average average = average_of(operators[e], states);
+            shape.data[e] = average.value;
+            bounds.push_back(average.bound);
+            if (average.range) {
+                range.push_back(*average.range);
             }
-            bounds.push_back(norm * (2 * tilt + 32 * epsilon));
-            if (vectors.size() > largest_range_space) {
-                double trace = 0.0;
-                for (const Eigen::Index vector : vectors) {
-                    trace += elements(operators[e], {vector})(0, 0).real();
-                }
-                shape.data[e] = trace / static_cast<double>(vectors.size());
-                continue;
-            }
-            const Eigen::MatrixXcd block = elements(operators[e], vectors);
-            shape.data[e] = block.trace().real() / static_cast<double>(vectors.size());
-            const Eigen::VectorXd extremes =
-                Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd>(block, Eigen::EigenvaluesOnly)
-                    .eigenvalues();
-            range.emplace_back(extremes.minCoeff(), extremes.maxCoeff());
         }
         Reference result = reference(std::move(shape), std::move(bounds));
         if (range.size() == operators.size()) {
             result.range = std::move(range);
         }
         return result;
+    }
+
+    /// Vectors of the ground space, then of a few levels above it.
+    struct GroundStates {
+        std::vector<Eigen::Index> vectors;
+        double residual = 0.0;     ///< of the ground space: ||H V - V E|| in the Frobenius norm
+        std::vector<double> gaps;  ///< from the ground space to each of the levels above
+        double rest = 0.0;         ///< gap to everything else; 0 if there is nothing else
+    };
+
+    GroundStates ground_states() const {
+        constexpr std::size_t watched = 6;
+        GroundStates states;
+        double squares = 0.0;
+        const std::size_t last = std::min(ground_.degeneracy + watched, ground_.levels.size());
+        const double top = ground_.levels[ground_.degeneracy - 1].energy;
+        for (std::size_t i = 0; i < last; ++i) {
+            const Level& level = ground_.levels[i];
+            states.vectors.push_back(level.vector);
+            if (i < ground_.degeneracy) {
+                squares += std::pow(spectrum_.residual(level.vector), 2);
+            } else {
+                states.gaps.push_back(level.energy - top);
+            }
+        }
+        states.residual = std::sqrt(squares);
+        if (last < ground_.levels.size()) {
+            states.rest = ground_.levels[last].energy - top;
+        }
+        return states;
+    }
+
+    struct Average {
+        double value = 0.0;
+        double bound = 0.0;
+        std::optional<std::pair<double, double>> range;
+    };
+
+    /// Tr(P A)/dim. The computed space is tilted from the exact one: towards a level at distance
+    /// gap_n by at most residual/gap_n (Davis and Kahan 1970), which moves the average by at most
+    /// 2 |<0|A|n>| times that, plus 2 ||A|| times the square of the whole tilt. A level that lies
+    /// close but that A does not connect (the other parity) costs no digits.
+    Average average_of(const std::vector<Term>& terms, const GroundStates& states) const {
+        double norm = 0.0;
+        for (const Term& term : terms) {
+            norm += std::abs(term.coefficient) * std::pow(0.5, term.string.size());
+        }
+        Average average;
+        if (ground_.degeneracy > largest_range_space) {
+            for (std::size_t i = 0; i < ground_.degeneracy; ++i) {
+                average.value += elements(terms, {states.vectors[i]})(0, 0).real() /
+                                 static_cast<double>(ground_.degeneracy);
+            }
+            const double gap = states.gaps.empty() ? 0.0 : states.gaps.front();
+            average.bound = norm * ((gap > 0 ? 2 * states.residual / gap : 0.0) + 32 * epsilon);
+            return average;
+        }
+        const auto dim = static_cast<Eigen::Index>(ground_.degeneracy);
+        const Eigen::MatrixXcd block = elements(terms, states.vectors);
+        average.value = block.topLeftCorner(dim, dim).trace().real() / static_cast<double>(dim);
+        double tilt = states.rest > 0 ? states.residual / states.rest : 0.0;
+        average.bound = norm * (2 * tilt + 32 * epsilon);
+        for (std::size_t n = 0; n < states.gaps.size(); ++n) {
+            const double towards = states.residual / states.gaps[n];
+            const auto column = dim + static_cast<Eigen::Index>(n);
+            const double coupling = block.col(column).head(dim).norm() + 16 * epsilon * norm;
+            average.bound += 2 * coupling * towards;
+            tilt += towards;
+        }
+        average.bound += 2 * norm * tilt * tilt;
+        const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd> solver(
+            Eigen::MatrixXcd(block.topLeftCorner(dim, dim)), Eigen::EigenvaluesOnly);
+        average.range = {solver.eigenvalues().minCoeff(), solver.eigenvalues().maxCoeff()};
+        return average;
     }
 
     /// <a|A|b> of the ground vectors; Sy is i times a real matrix in the real basis.

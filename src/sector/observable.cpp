@@ -55,12 +55,13 @@ double tilt_of(const Solution& solution, const GroundSpace& ground) {
     for (const auto& [index, members] : by_block) {
         const Block& block = solution.block(index);
         double squares = 0.0;
+        std::size_t highest = 0;  // equal energies leave the order of members open
         for (const BlockLevel* member : members) {
             squares += std::pow(block.residual(member->level), 2);
+            highest = std::max(highest, member->level);
         }
-        const std::size_t above = members.back()->level + 1;
-        if (above < block.known()) {
-            const double gap = block.energy(above) - block.energy(members.back()->level);
+        if (highest + 1 < block.known()) {
+            const double gap = block.energy(highest + 1) - block.energy(highest);
             tilt = std::max(tilt, std::sqrt(squares) / gap);
         }
     }

@@ -39,8 +39,7 @@ TEST_CASE("momentum 0 over all up counts: necklaces, OEIS A000031 (MacMahon 1892
 }
 
 TEST_CASE("momentum 1 over all up counts: Lyndon words, OEIS A001037 (Moreau 1872)") {
-    const std::vector<std::size_t> lyndon = {
-        2, 1, 2, 3, 6, 9, 18, 30, 56, 99, 186, 335, 630, 1161};
+    const std::vector<std::size_t> lyndon = {2, 1, 2, 3, 6, 9, 18, 30, 56, 99, 186, 335, 630, 1161};
     for (int length = 3; length <= 14; ++length) {
         const Orbits orbits({Conserved::nothing, 0}, ring(length));
         CHECK(orbits.with_momentum(1).size() == lyndon[static_cast<std::size_t>(length - 1)]);

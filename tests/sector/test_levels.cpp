@@ -1,7 +1,7 @@
-#include <doctest/doctest.h>
-
 #include <cmath>
 #include <map>
+
+#include <doctest/doctest.h>
 
 #include "chainmark/dense/route.hpp"
 #include "chainmark/sector/krylov.hpp"
@@ -146,9 +146,8 @@ TEST_CASE("level lists from Krylov solves equal those from momentum blocks") {
     const auto complete = again.all_levels(problem);
     REQUIRE(krylov.size() == 12);
     for (std::size_t i = 0; i < krylov.size(); ++i) {
-        CHECK_NEAR(krylov[i].energy,
-                   complete[i].energy,
-                   bound(krylov[i].bound + complete[i].bound));
+        CHECK_NEAR(
+            krylov[i].energy, complete[i].energy, bound(krylov[i].bound + complete[i].bound));
     }
 }
 

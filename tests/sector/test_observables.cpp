@@ -76,12 +76,12 @@ TEST_CASE("every quantity of random chains: sectors and full matrix agree within
 }
 
 TEST_CASE("degenerate ground spaces: averages and ranges") {
-    check_all(family_problem("xx", {1.0}, ring(7)), true);          // fourfold
-    check_all(family_problem("heisenberg", {1.0}, ring(5)), true);  // fourfold
+    check_all(family_problem("xx", {1.0}, ring(7)), true);           // fourfold
+    check_all(family_problem("heisenberg", {1.0}, ring(5)), true);   // fourfold
     check_all(family_problem("heisenberg", {-1.0}, ring(6)), true);  // sevenfold multiplet
-    check_all(family_problem("xx", {1.0}, ring(8), 1.0), true);     // at the last jump
-    check_all(family_problem("xx", {0.0}, ring(6)), true);          // everything
-    check_all(family_problem("j1j2", {1.0, 0.5}, ring(8)), true);   // Majumdar-Ghosh, twofold
+    check_all(family_problem("xx", {1.0}, ring(8), 1.0), true);      // at the last jump
+    check_all(family_problem("xx", {0.0}, ring(6)), true);           // everything
+    check_all(family_problem("j1j2", {1.0, 0.5}, ring(8)), true);    // Majumdar-Ghosh, twofold
 }
 
 TEST_CASE("at a jump the magnetization's range covers both plateaus") {
@@ -100,8 +100,8 @@ TEST_CASE("at a jump the magnetization's range covers both plateaus") {
 TEST_CASE("a ferromagnet flips all at once") {
     // Heisenberg ring, J < 0: the multiplet S = L/2 is the ground space, so one jump at h = 0 takes
     // Sz from -L/2 to L/2 (elementary).
-    const Reference found = ask(
-        sector_route(), family_problem("heisenberg", {-1.0}, ring(6)), QuantityId::jump_fields);
+    const Reference found =
+        ask(sector_route(), family_problem("heisenberg", {-1.0}, ring(6)), QuantityId::jump_fields);
     REQUIRE(found.value.data.size() == 1);
     CHECK_NEAR(found.value.real_at(0), 0.0, bound(found.bound[0]));
     CHECK(found.value.total_sz == std::vector<double>{-3.0, 3.0});

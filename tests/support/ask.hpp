@@ -1,10 +1,10 @@
 #pragma once
 
-#include <doctest/doctest.h>
-
 #include <memory>
 #include <thread>
 #include <variant>
+
+#include <doctest/doctest.h>
 
 #include "chainmark/reference/route.hpp"
 

@@ -17,7 +17,7 @@ enum class Keeps { sz, parity, nothing };
 struct RandomChain {
     Chain chain;
     Keeps keeps = Keeps::sz;
-    bool uniform = false;   ///< the same couplings everywhere: translation symmetry on a ring
+    bool uniform = false;  ///< the same couplings everywhere: translation symmetry on a ring
     bool complex = false;
 };
 
@@ -30,8 +30,7 @@ inline std::vector<PlacedTerm> random_terms(const RandomChain& wanted, std::mt19
     const auto couplings = [&](int distance, bool complex) {
         std::vector<std::complex<double>> values;
         const int length = wanted.chain.length();
-        const int count =
-            wanted.uniform ? 1 : wanted.chain.is_ring() ? length : length - distance;
+        const int count = wanted.uniform ? 1 : wanted.chain.is_ring() ? length : length - distance;
         for (int i = 0; i < count; ++i) {
             const double re = draw(generator);
             values.emplace_back(re, complex ? draw(generator) : 0.0);
@@ -56,9 +55,8 @@ inline std::vector<PlacedTerm> random_terms(const RandomChain& wanted, std::mt19
         add(up, up, 1, wanted.complex, true);
     }
     if (wanted.keeps == Keeps::nothing) {
-        terms.push_back({.factors = {SiteMatrix::sx()},
-                         .offsets = {0},
-                         .coupling = couplings(0, false)});
+        terms.push_back(
+            {.factors = {SiteMatrix::sx()}, .offsets = {0}, .coupling = couplings(0, false)});
     }
     return terms;
 }
@@ -84,6 +82,8 @@ inline Chain ring(int length, double twist = 0.0) {
     return {length, BoundaryKind::ring, twist};
 }
 
-inline Chain open_chain(int length) { return {length, BoundaryKind::open, 0.0}; }
+inline Chain open_chain(int length) {
+    return {length, BoundaryKind::open, 0.0};
+}
 
 }  // namespace chainmark::test

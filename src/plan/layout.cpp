@@ -1,0 +1,196 @@
+#include <algorithm>
+#include <map>
+#include <set>
+#include <tuple>
+
+#include "chainmark/plan/build.hpp"
+#include "chainmark/plan/work.hpp"
+
+namespace chainmark {
+namespace {
+
+/// Sorts the points of one case into rows and bundles.
+class Layout {
+public:
+    Layout(const Case& c, std::size_t case_index, Plan::Work& work)
+        : case_(c), case_index_(case_index), work_(work), builder_(c) {}
+
+    /// All errors of the case; on success the rows and bundles are in `work`.
+    Errors run() {
+        const Result<std::vector<Parameters>> points = grid_points(case_);
+        if (!points) {
+            return {points.error()};
+        }
+        work_.cases.push_back({&case_, {}});
+        for (const Parameters& point : *points) {
+            add_point(point);
+            if (errors_.size() >= most_errors) {
+                break;
+            }
+        }
+        return errors_;
+    }
+
+private:
+    static constexpr std::size_t most_errors = 5;  ///< one mistake often shows at every point
+
+    static bool is_infinite(const Parameters& point) {
+        return parameter(point, "sites") == infinite_sites;
+    }
+
+    std::vector<std::size_t> asked(const Parameters& point, bool per_chain) const {
+        std::vector<std::size_t> indices;
+        const Where missing = is_infinite(point) ? Where::finite : Where::infinite;
+        for (std::size_t q = 0; q < case_.quantities.size(); ++q) {
+            const QuantitySpec& spec = *case_.quantities[q].query.spec;
+            if (spec.per_chain == per_chain && spec.where != missing) {
+                indices.push_back(q);
+            }
+        }
+        return indices;
+    }
+
+    void add_point(const Parameters& point) {
+        Result<Problem> problem = builder_.build(point);
+        if (!problem) {
+            errors_.push_back(problem.error());
+            return;
+        }
+        add_chain_row(point);
+        const std::vector<std::size_t> quantities = asked(point, false);
+        if (quantities.empty()) {
+            return;
+        }
+        const std::size_t row = add_row(point, quantities);
+        add_to_bundle(*problem, row, quantities, false);
+        if (!is_infinite(point) && builder_.has_infinite_chain()) {
+            add_beside(point, row, quantities);
+        }
+    }
+
+    /// Quantities that are asked once for all fields of a chain.
+    void add_chain_row(const Parameters& point) {
+        const std::vector<std::size_t> quantities = asked(point, true);
+        Parameters chain = point;
+        std::erase_if(chain, [](const auto& entry) { return entry.first == "h"; });
+        if (quantities.empty() || !chains_.insert(chain).second) {
+            return;
+        }
+        const Result<Problem> problem = builder_.build_without_field(point);
+        add_to_bundle(*problem, add_row(chain, quantities), quantities, false);
+    }
+
+    void add_beside(const Parameters& point,
+                    std::size_t row,
+                    const std::vector<std::size_t>& quantities) {
+        std::vector<std::size_t> shared;
+        for (const std::size_t q : quantities) {
+            if (case_.quantities[q].query.spec->where == Where::both) {
+                shared.push_back(q);
+            }
+        }
+        Parameters infinite = point;
+        for (auto& [name, value] : infinite) {
+            if (name == "sites") {
+                value = infinite_sites;
+            }
+        }
+        const Result<Problem> problem = builder_.build(infinite);
+        if (problem && !shared.empty()) {
+            add_to_bundle(*problem, row, shared, true);
+        }
+    }
+
+    std::size_t add_row(const Parameters& point, const std::vector<std::size_t>& quantities) {
+        work_.cases.back().rows.push_back({point, quantities});
+        return work_.cases.back().rows.size() - 1;
+    }
+
+    /// Adds a problem to the bundle with the same terms and queries, or opens one. Where the field
+    /// does not commute every problem is work of its own and stays alone.
+    void add_to_bundle(const Problem& problem,
+                       std::size_t row,
+                       const std::vector<std::size_t>& quantities,
+                       bool beside) {
+        const Key key{problem.terms.get(), quantities, beside};
+        const bool shares = conserves_sz(*problem.terms);
+        auto at = open_.find(key);
+        if (at == open_.end() || !shares) {
+            auto bundle = std::make_unique<Bundle>();
+            for (const std::size_t q : quantities) {
+                bundle->batch.queries.push_back(case_.quantities[q].query);
+            }
+            bundle->beside = beside;
+            bundle->case_index = case_index_;
+            work_.bundles.push_back(std::move(bundle));
+            at = open_.insert_or_assign(key, work_.bundles.back().get()).first;
+        }
+        add_problem(*at->second, problem, row, quantities);
+    }
+
+    void add_problem(Bundle& bundle,
+                     const Problem& problem,
+                     std::size_t row,
+                     const std::vector<std::size_t>& quantities) {
+        // Beside several sizes stands the same infinite chain; other problems occur once.
+        const auto [at, fresh] =
+            index_.emplace(std::pair(&bundle, problem.field), bundle.batch.problems.size());
+        const std::size_t index = at->second;
+        if (fresh) {
+            bundle.batch.problems.push_back(problem);
+            bundle.targets.emplace_back(quantities.size());
+        }
+        const Row& to = work_.cases.back().rows[row];
+        for (std::size_t i = 0; i < quantities.size(); ++i) {
+            const auto slot = std::find(to.quantities.begin(), to.quantities.end(), quantities[i]);
+            bundle.targets[index][i].push_back(
+                {case_index_, row, static_cast<std::size_t>(slot - to.quantities.begin())});
+        }
+    }
+
+    using Key = std::tuple<const TermList*, std::vector<std::size_t>, bool>;
+
+    const Case& case_;
+    std::size_t case_index_;
+    Plan::Work& work_;
+    ProblemBuilder builder_;
+    Errors errors_;
+    std::set<Parameters> chains_;
+    std::map<Key, Bundle*> open_;
+    std::map<std::pair<const Bundle*, double>, std::size_t> index_;  ///< of a field in a bundle
+};
+
+bool is_wanted(const Case& c, RouteId route) {
+    return c.routes.empty() || std::find(c.routes.begin(), c.routes.end(), route) != c.routes.end();
+}
+
+void add_jobs(Plan::Work& work) {
+    for (const auto& bundle : work.bundles) {
+        for (const Route& route : routes()) {
+            const bool right_kind = !bundle->beside || route.id == RouteId::limit;
+            if (right_kind && is_wanted(*work.cases[bundle->case_index].source, route.id)) {
+                work.jobs.push_back({bundle.get(), &route, route.plan(bundle->batch)});
+            }
+        }
+    }
+}
+
+}  // namespace
+
+Checked<Plan> Plan::make(const std::vector<Case>& cases) {
+    auto work = std::make_shared<Work>();
+    Errors errors;
+    for (std::size_t i = 0; i < cases.size(); ++i) {
+        const Errors found = Layout(cases[i], i, *work).run();
+        errors.insert(errors.end(), found.begin(), found.end());
+    }
+    if (!errors.empty()) {
+        return tl::unexpected(errors);
+    }
+    add_jobs(*work);
+    Plan plan;
+    plan.work_ = work;
+    return plan;
+}
+
+}  // namespace chainmark

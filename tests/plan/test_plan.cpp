@@ -1,0 +1,312 @@
+#include <chrono>
+#include <cmath>
+#include <random>
+#include <thread>
+
+#include <doctest/doctest.h>
+
+#include "chainmark/plan/plan.hpp"
+#include "support/ask.hpp"
+#include "support/near.hpp"
+
+using namespace chainmark;
+using namespace chainmark::test;
+
+namespace {
+
+Case parsed(const std::string& body) {
+    const auto c = parse_case("format = 1\n" + body, "test.toml", {});
+    if (!c) {
+        FAIL(to_string(c.error().front()));
+    }
+    return *c;
+}
+
+std::vector<CaseResult> run(const std::vector<Case>& cases, const Context& with = context()) {
+    const auto plan = Plan::make(cases);
+    REQUIRE(plan.has_value());
+    return plan->run(with);
+}
+
+std::string first_error(const Case& c) {
+    const auto plan = Plan::make({c});
+    REQUIRE(!plan.has_value());
+    return to_string(plan.error().front());
+}
+
+const char* const xx_sweep = R"(
+[system]
+sites = [6, 7]
+[hamiltonian]
+family = "xx"
+J = [1.0, -1.0]
+h = { from = 0.0, to = 0.4, count = 3 }
+[[quantity]]
+name = "ground_energy_per_site"
+[[quantity]]
+name = "jump_fields"
+)";
+
+}  // namespace
+
+TEST_CASE("grids walk the last written axis fastest") {
+    const auto points = grid_points(parsed(xx_sweep));
+    REQUIRE(points.has_value());
+    REQUIRE(points->size() == 12);
+    CHECK(points->at(0) == Parameters{{"sites", 6}, {"J", 1.0}, {"h", 0.0}});
+    CHECK(points->at(1) == Parameters{{"sites", 6}, {"J", 1.0}, {"h", 0.2}});
+    CHECK(points->at(3) == Parameters{{"sites", 6}, {"J", -1.0}, {"h", 0.0}});
+    CHECK(points->at(6) == Parameters{{"sites", 7}, {"J", 1.0}, {"h", 0.0}});
+}
+
+TEST_CASE("zip walks lists together") {
+    const Case c = parsed(R"(
+[system]
+sites = [6, 8]
+[hamiltonian]
+family = "xx"
+J = 1.0
+h = [0.1, 0.2]
+[grid]
+combine = "zip"
+[[quantity]]
+name = "gap"
+)");
+    const auto points = grid_points(c);
+    REQUIRE(points->size() == 2);
+    CHECK(points->at(1) == Parameters{{"sites", 8}, {"J", 1.0}, {"h", 0.2}});
+}
+
+TEST_CASE("a run answers every point by every route and compares") {
+    const auto results = run({parsed(xx_sweep)});
+    REQUIRE(results.size() == 1);
+    CHECK(results[0].verdict == Verdict::agree);
+    // 12 points, and jump_fields once for each of the four chains
+    REQUIRE(results[0].points.size() == 16);
+    int chains = 0;
+    for (const PointResult& point : results[0].points) {
+        for (const QuantityResult& quantity : point.quantities) {
+            CHECK(quantity.references.size() == 3);
+            CHECK(quantity.comparison.verdict == Verdict::agree);
+        }
+        const bool has_field = point.parameters.back().first == "h";
+        chains += has_field ? 0 : 1;
+        CHECK(point.quantities.front().infinite.has_value() == has_field);
+    }
+    CHECK(chains == 4);
+}
+
+TEST_CASE("infinite points are answered by the limit, beside finite ones it has no vote") {
+    const auto results = run({parsed(R"(
+[system]
+sites = ["infinite"]
+[hamiltonian]
+family = "xx"
+J = 1.0
+h = 0.5
+[[quantity]]
+name = "magnetization"
+[[quantity]]
+name = "phase"
+)")});
+    const auto& quantities = results[0].points.at(0).quantities;
+    CHECK(quantities[0].comparison.verdict == Verdict::single);
+    // arcsin(1/2)/pi (Katsura, Phys. Rev. 127, 1508 (1962))
+    CHECK_NEAR(quantities[0].references[0].value.real_at(0), 1.0 / 6, rounding(1.0, 4));
+    CHECK(quantities[1].references[0].value.text == "critical");
+}
+
+TEST_CASE("written terms: parameters, couplings, draws") {
+    const Case c = parsed(R"(
+[system]
+sites = 5
+boundary = "open"
+[parameters]
+Jxy = [0.5, 2.0]
+seed = 7
+[[hamiltonian.term]]
+operators = ["S+", "S-"]
+offsets = [0, 1]
+coupling = { parameter = "Jxy", factor = 0.5 }
+add_conjugate = true
+[[hamiltonian.term]]
+operators = ["Sz"]
+offsets = [0]
+coupling = { uniform = [-1, 1], seed = "seed" }
+[[hamiltonian.term]]
+operators = ["Sz", "Sz"]
+sites = [0, 3]
+coupling = 0.25
+[[quantity]]
+name = "ground_energy"
+)");
+    const auto points = grid_points(c).value();
+    const Problem problem = build_problem(c, points.at(1)).value();
+    double hop = 0.0;
+    double first_field = 0.0;
+    double pair = 0.0;
+    for (const Term& term : problem.terms->terms) {
+        const std::string text = to_string(term.string);
+        hop = text == "S+_1 S-_2" ? term.coefficient.real() : hop;
+        first_field = text == "Sz_0" ? term.coefficient.real() : first_field;
+        pair = text == "Sz_0 Sz_3" ? term.coefficient.real() : pair;
+    }
+    CHECK(hop == 1.0);
+    CHECK(pair == 0.25);
+    // std::mt19937_64(7): the first output is fixed by the C++ standard's definition
+    std::mt19937_64 generator(7);
+    CHECK(first_field == -1.0 + 2.0 * (static_cast<double>(generator() >> 11) * 0x1p-53));
+    // a chain of hoppings and fields is quadratic until the Sz Sz term: two routes
+    const auto results = run({c});
+    CHECK(results[0].verdict == Verdict::agree);
+    CHECK(results[0].points[0].quantities[0].references.size() == 2);
+    CHECK(results[0].points[0].quantities[0].not_run[0].route == RouteId::fermion);
+}
+
+TEST_CASE("jump fields do not depend on the family's h, but on a written field") {
+    const Case c = parsed(R"(
+[system]
+sites = 6
+[hamiltonian]
+family = "xx"
+J = 1.0
+h = [0.3, 0.7]
+[[hamiltonian.term]]
+operators = ["Sz"]
+offsets = [0]
+coupling = -0.1
+[[quantity]]
+name = "jump_fields"
+)");
+    const auto results = run({c});
+    REQUIRE(results[0].points.size() == 1);
+    const Reference& found = results[0].points[0].quantities[0].references[0];
+    CHECK(results[0].verdict == Verdict::agree);
+    // the last jump of the total field is at |J| = 1 (Katsura 1962); 0.1 of it is written already
+    CHECK_NEAR(found.value.real_at(5), 0.9, rounding(1.0, 16));
+}
+
+TEST_CASE("errors carry the place in the file") {
+    CHECK(first_error(parsed(R"(
+[system]
+sites = 5
+[hamiltonian]
+family = "xx"
+J = 1.0
+[[hamiltonian.term]]
+operators = ["S+", "S-"]
+offsets = [0, 2]
+coupling = 1.0
+[[quantity]]
+name = "gap"
+)"))
+              .find("test.toml:8") == 0);
+    CHECK(first_error(parsed(R"(
+[system]
+sites = 6
+boundary = { twist = 0.3 }
+[hamiltonian]
+family = "tfim"
+J = 1.0
+[[quantity]]
+name = "gap"
+)"))
+              .find("conserves Sz") != std::string::npos);
+    CHECK(first_error(parsed(R"(
+[system]
+sites = 4
+[[hamiltonian.term]]
+operators = ["Sz", "Sz"]
+offsets = [0, 2]
+coupling = 1.0
+[[quantity]]
+name = "gap"
+)"))
+              .find("coincident") != std::string::npos);
+}
+
+TEST_CASE("grids above 10^5 points are refused with their number") {
+    const std::string error = first_error(parsed(R"(
+[system]
+sites = 6
+[hamiltonian]
+family = "xx"
+J = { from = 0, to = 1, count = 1000 }
+h = { from = 0, to = 1, count = 1000 }
+[[quantity]]
+name = "gap"
+)"));
+    CHECK(error.find("1000000 points") != std::string::npos);
+    CHECK(error.find("--set") != std::string::npos);
+}
+
+TEST_CASE("over the memory budget is undecided, with what it would need") {
+    Context small = context();
+    small.memory = std::make_shared<MemoryBudget>(1e5);
+    const auto results = run({parsed(R"(
+[system]
+sites = 10
+[hamiltonian]
+family = "xxz"
+J = 1.0
+Delta = 0.5
+[[quantity]]
+name = "gap"
+)")},
+                             small);
+    CHECK(results[0].verdict == Verdict::undecided);
+    const auto& not_run = results[0].points[0].quantities[0].not_run;
+    CHECK(not_run[0].reason.find("GiB") != std::string::npos);
+    CHECK(not_run[0].covers);
+}
+
+TEST_CASE("a stop request ends the run within a second and keeps finished points") {
+    // 22 sites keep the sectors busy for many seconds; the six-site points are done at once.
+    const std::vector<Case> cases = {parsed(R"(
+[system]
+sites = [6, 22]
+[hamiltonian]
+family = "xxz"
+J = 1.0
+Delta = 0.5
+[[quantity]]
+name = "ground_energy"
+)")};
+    const auto plan = Plan::make(cases);
+    std::stop_source stop;
+    Context stoppable = context();
+    stoppable.stop = stop.get_token();
+    std::jthread interrupter([&] {
+        std::this_thread::sleep_for(std::chrono::milliseconds(1500));
+        stop.request_stop();
+    });
+    const auto start = std::chrono::steady_clock::now();
+    const auto results = plan->run(stoppable);
+    const double seconds =
+        std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
+    CHECK(seconds < 3.0);
+    REQUIRE(results[0].points.size() == 1);
+    CHECK(results[0].points_planned == 2);
+    CHECK(results[0].points[0].quantities[0].comparison.verdict == Verdict::agree);
+}
+
+TEST_CASE("sizes beside the infinite chain give trends, even and odd apart") {
+    const auto results = run({parsed(R"(
+[system]
+sites = { from = 7, to = 14, step = 1 }
+[hamiltonian]
+family = "xx"
+J = 1.0
+[routes]
+use = ["fermion", "limit"]
+[[quantity]]
+name = "ground_energy_per_site"
+)")});
+    REQUIRE(results[0].trends.size() == 2);
+    for (const Trend& trend : results[0].trends) {
+        CHECK(trend.trend == "exponent");
+        CHECK(trend.expected == 2.0);
+        CHECK(std::abs(trend.value - 2.0) < 0.1);
+    }
+    CHECK(results[0].trends[0].group != results[0].trends[1].group);
+}
