@@ -11,26 +11,6 @@ namespace {
 const std::string owner = "[[quantity]]";
 constexpr int farthest = 1000000;
 
-std::string key_of(OptionId option) {
-    switch (option) {
-        case OptionId::count:
-            return "count";
-        case OptionId::axis:
-            return "axis";
-        case OptionId::axes:
-            return "axes";
-        case OptionId::distance:
-            return "distance";
-        case OptionId::pairs:
-            return "pairs";
-        case OptionId::connected:
-            return "connected";
-        case OptionId::parity:
-            return "parity";
-    }
-    return "";
-}
-
 std::optional<int> read_place(Reader& reader, const Node& node, const std::string& what) {
     const auto place = reader.whole(node, what, 0, farthest);
     return place ? std::optional(static_cast<int>(*place)) : std::nullopt;
@@ -83,7 +63,7 @@ void read_pairs(Reader& reader, const Node& node, Options& options) {
 }
 
 void read_option(Reader& reader, OptionId option, const Node& node, Options& options) {
-    const std::string what = name_in(key_of(option), owner);
+    const std::string what = name_in(to_string(option), owner);
     switch (option) {
         case OptionId::count:
             options.count =
@@ -219,8 +199,8 @@ void read_quantity(Reader& reader, const Node& node, Draft& draft) {
     quantity.query.label = spec->name;
     quantity.where = reader.place(node.at);
     for (const OptionId option : spec->options) {
-        keys.push_back(key_of(option));
-        if (const Entry* entry = find(*table, key_of(option))) {
+        keys.push_back(to_string(option));
+        if (const Entry* entry = find(*table, to_string(option))) {
             read_option(reader, option, entry->value, quantity.query.options);
         }
     }

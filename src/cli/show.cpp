@@ -52,7 +52,7 @@ std::string families_text() {
 std::vector<std::string> option_keys(const QuantitySpec& spec) {
     std::vector<std::string> keys;
     for (const OptionId option : spec.options) {
-        keys.push_back(option_key(option));
+        keys.push_back(to_string(option));
     }
     return keys;
 }

@@ -126,7 +126,7 @@ std::vector<Level> FullSpectrum<Scalar>::levels(double field) const {
 }
 
 template <class Scalar>
-std::vector<typename FullSpectrum<Scalar>::SzMinimum> FullSpectrum<Scalar>::lowest_by_sz() const {
+std::vector<SzMinimum> FullSpectrum<Scalar>::lowest_by_sz() const {
     std::map<double, SzMinimum> lowest;
     for (Eigen::Index i = 0; i < energies_.size(); ++i) {
         const SzMinimum level = {sz_[i], energies_[i], bounds_[i]};

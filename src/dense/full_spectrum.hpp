@@ -6,6 +6,7 @@
 
 #include "chainmark/base/context.hpp"
 #include "chainmark/dense/full_matrix.hpp"
+#include "chainmark/dense/jumps.hpp"
 #include "chainmark/reference/problem.hpp"
 #include "chainmark/reference/value.hpp"
 
@@ -39,9 +40,6 @@ public:
 
     /// Lowest energy at field 0 and its bound for each total Sz = -L/2 ... L/2. Needs
     /// field_commutes.
-    struct SzMinimum {
-        double sz, energy, bound;
-    };
     std::vector<SzMinimum> lowest_by_sz() const;
 
     double sz(Eigen::Index vector) const { return sz_[vector]; }

@@ -1,75 +1,22 @@
 #include "chainmark/dense/route.hpp"
 
 #include <algorithm>
-#include <chrono>
 #include <cmath>
 #include <set>
 
-#include <Eigen/Eigenvalues>
 #include <fmt/format.h>
 
 #include "chainmark/base/numerics.hpp"
 #include "chainmark/dense/full_spectrum.hpp"
+#include "chainmark/dense/ground.hpp"
+#include "chainmark/dense/jumps.hpp"
 
 namespace chainmark {
 namespace {
 
-using dense::FullMatrix;
-using dense::FullSpectrum;
-using dense::Level;
+using namespace dense;
 
 constexpr int largest_length = 12;
-constexpr std::size_t largest_range_space = 256;  ///< ground spaces above it get no range
-
-std::vector<Term> site_operator(Axis axis, int site, double factor) {
-    const std::complex<double> half_i(0.0, 0.5 * factor);
-    switch (axis) {
-        case Axis::z:
-            return {{{{site, SiteOperator::z}}, factor}};
-        case Axis::x:
-            return {{{{site, SiteOperator::plus}}, factor / 2},
-                    {{{site, SiteOperator::minus}}, factor / 2}};
-        case Axis::y:  // Sy = (S+ - S-) / (2i)
-            return {{{{site, SiteOperator::plus}}, -half_i},
-                    {{{site, SiteOperator::minus}}, half_i}};
-    }
-    return {};
-}
-
-/// Sz_i Sz_j; for i = j it is 1/4.
-Term zz(int i, int j, double factor) {
-    if (i == j) {
-        return {{}, factor / 4};
-    }
-    return {{{std::min(i, j), SiteOperator::z}, {std::max(i, j), SiteOperator::z}}, factor};
-}
-
-/// The ground space of a problem, and what lies above it.
-struct Ground {
-    std::vector<Level> levels;  ///< all, ascending
-    std::size_t degeneracy = 0;
-    bool straddles = false;  ///< a level's bound reaches over the edge of the window
-    double bound = 0.0;      ///< largest bound in the ground space
-
-    bool has_next() const { return degeneracy < levels.size(); }
-    double gap() const { return levels[degeneracy].energy - levels.front().energy; }
-};
-
-Ground ground_of(std::vector<Level> levels, double window) {
-    Ground ground{.levels = std::move(levels)};
-    const Level& lowest = ground.levels.front();
-    for (const Level& level : ground.levels) {
-        const double distance = level.energy - lowest.energy - window;
-        if (std::abs(distance) <= level.bound + lowest.bound && window > 0) {
-            ground.straddles = true;
-        }
-        if (distance <= 0) {
-            ++ground.degeneracy;
-            ground.bound = std::max(ground.bound, level.bound);
-        }
-    }
-    return ground;
-}
 
 template <class Scalar>
 class Evaluator {
@@ -174,51 +121,14 @@ private:
         return result;
     }
 
-    /// Tries every pair of total Sz: their energies cross at one field, and it is a jump if nothing
-    /// lies lower there. Sz values that meet there within the ground window jump together.
     Answer jump_fields() const {
-        const auto lowest = spectrum_.lowest_by_sz();
-        const double window = ground_window({problem_.chain, problem_.terms, 0.0});
-        const double rounding =
-            64 * epsilon * (1 + largest_coupling(*problem_.terms)) * spectrum_.length();
-        struct Jump {
-            double field, bound, below, above;
-        };
-        std::vector<Jump> jumps;
-        for (const auto& a : lowest) {
-            for (const auto& b : lowest) {
-                if (!(a.sz < b.sz)) {
-                    continue;
-                }
-                const double field = (b.energy - a.energy) / (b.sz - a.sz);
-                const double crossing = a.energy - field * a.sz;
-                Jump jump{field, 0.0, a.sz, b.sz};
-                bool lower = false;
-                for (const auto& other : lowest) {
-                    const double height = other.energy - field * other.sz - crossing;
-                    lower = lower || height < -rounding;
-                    if (height <= window) {
-                        jump.below = std::min(jump.below, other.sz);
-                        jump.above = std::max(jump.above, other.sz);
-                    }
-                }
-                const bool widest = jump.below == a.sz && jump.above == b.sz;
-                jump.bound = (a.bound + b.bound) / (b.sz - a.sz) +
-                             2 * epsilon * (std::abs(field) + std::abs(problem_.field));
-                if (!lower && widest) {
-                    jumps.push_back(jump);
-                }
-            }
-        }
-        std::sort(jumps.begin(), jumps.end(), [](const Jump& a, const Jump& b) {
-            return a.below < b.below;
-        });
         std::vector<double> fields;
         std::vector<double> bounds;
-        std::vector<double> steps = {lowest.front().sz};
-        for (const Jump& jump : jumps) {
+        std::vector<double> steps = {-spectrum_.length() / 2.0};
+        const double window = ground_window({problem_.chain, problem_.terms, 0.0});
+        for (const Jump& jump : find_jumps(spectrum_.lowest_by_sz(), window)) {
             fields.push_back(jump.field - problem_.field);
-            bounds.push_back(jump.bound);
+            bounds.push_back(jump.bound + epsilon * std::abs(problem_.field));
             steps.push_back(jump.above);
         }
         Reference result = reference(Value::array(fields), std::move(bounds));
@@ -300,11 +210,11 @@ private:
 
     /// Ground-space averages of the operators, as entries of `shape`, with ranges.
     Answer expectation(const std::vector<std::vector<Term>>& operators, Value shape) const {
-        const GroundStates states = ground_states();
+        const GroundAverages<Scalar> averages(ground_, spectrum_);
         Range range;
         std::vector<double> bounds;
         for (std::size_t e = 0; e < operators.size(); ++e) {
-            const Average average = average_of(operators[e], states);
+            const Average average = averages.of(operators[e]);
             shape.data[e] = average.value;
             bounds.push_back(average.bound);
             if (average.range) {
@@ -316,101 +226,6 @@ private:
             result.range = std::move(range);
         }
         return result;
-    }
-
-    /// Vectors of the ground space, then of a few levels above it.
-    struct GroundStates {
-        std::vector<Eigen::Index> vectors;
-        double residual = 0.0;     ///< of the ground space: ||H V - V E|| in the Frobenius norm
-        std::vector<double> gaps;  ///< from the ground space to each of the levels above
-        double rest = 0.0;         ///< gap to everything else; 0 if there is nothing else
-    };
-
-    GroundStates ground_states() const {
-        constexpr std::size_t watched = 6;
-        GroundStates states;
-        double squares = 0.0;
-        const std::size_t last = std::min(ground_.degeneracy + watched, ground_.levels.size());
-        const double top = ground_.levels[ground_.degeneracy - 1].energy;
-        for (std::size_t i = 0; i < last; ++i) {
-            const Level& level = ground_.levels[i];
-            states.vectors.push_back(level.vector);
-            if (i < ground_.degeneracy) {
-                squares += std::pow(spectrum_.residual(level.vector), 2);
-            } else {
-                states.gaps.push_back(level.energy - top);
-            }
-        }
-        states.residual = std::sqrt(squares);
-        if (last < ground_.levels.size()) {
-            states.rest = ground_.levels[last].energy - top;
-        }
-        return states;
-    }
-
-    struct Average {
-        double value = 0.0;
-        double bound = 0.0;
-        std::optional<std::pair<double, double>> range;
-    };
-
-    /// Tr(P A)/dim. The computed space is tilted from the exact one: towards a level at distance
-    /// gap_n by at most residual/gap_n (Davis and Kahan 1970), which moves the average by at most
-    /// 2 |<0|A|n>| times that, plus 2 ||A|| times the square of the whole tilt. A level that lies
-    /// close but that A does not connect (the other parity) costs no digits.
-    Average average_of(const std::vector<Term>& terms, const GroundStates& states) const {
-        double norm = 0.0;
-        for (const Term& term : terms) {
-            norm += std::abs(term.coefficient) * std::pow(0.5, term.string.size());
-        }
-        Average average;
-        if (ground_.degeneracy > largest_range_space) {
-            for (std::size_t i = 0; i < ground_.degeneracy; ++i) {
-                average.value += elements(terms, {states.vectors[i]})(0, 0).real() /
-                                 static_cast<double>(ground_.degeneracy);
-            }
-            const double gap = states.gaps.empty() ? 0.0 : states.gaps.front();
-            average.bound = norm * ((gap > 0 ? 2 * states.residual / gap : 0.0) + 32 * epsilon);
-            return average;
-        }
-        const auto dim = static_cast<Eigen::Index>(ground_.degeneracy);
-        const Eigen::MatrixXcd block = elements(terms, states.vectors);
-        average.value = block.topLeftCorner(dim, dim).trace().real() / static_cast<double>(dim);
-        double tilt = states.rest > 0 ? states.residual / states.rest : 0.0;
-        average.bound = norm * (2 * tilt + 32 * epsilon);
-        for (std::size_t n = 0; n < states.gaps.size(); ++n) {
-            const double towards = states.residual / states.gaps[n];
-            const auto column = dim + static_cast<Eigen::Index>(n);
-            const double coupling = block.col(column).head(dim).norm() + 16 * epsilon * norm;
-            average.bound += 2 * coupling * towards;
-            tilt += towards;
-        }
-        average.bound += 2 * norm * tilt * tilt;
-        const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd> solver(
-            Eigen::MatrixXcd(block.topLeftCorner(dim, dim)), Eigen::EigenvaluesOnly);
-        average.range = {solver.eigenvalues().minCoeff(), solver.eigenvalues().maxCoeff()};
-        return average;
-    }
-
-    /// <a|A|b> of the ground vectors; Sy is i times a real matrix in the real basis.
-    Eigen::MatrixXcd elements(const std::vector<Term>& terms,
-                              const std::vector<Eigen::Index>& vectors) const {
-        if constexpr (std::is_same_v<Scalar, double>) {
-            std::vector<Term> turned = terms;
-            std::complex<double> phase = 1.0;
-            if (!terms.empty() && terms.front().coefficient.real() == 0.0 &&
-                terms.front().coefficient.imag() != 0.0) {
-                phase = std::complex<double>(0.0, 1.0);
-                for (Term& term : turned) {
-                    term.coefficient /= phase;
-                }
-            }
-            return phase * spectrum_.elements(
-                               dense::full_matrix<double>(turned, spectrum_.length()), vectors);
-        } else {
-            return spectrum_.elements(dense::full_matrix<Scalar>(terms, spectrum_.length()),
-                                      vectors);
-        }
     }
 
     const Problem& problem_;
@@ -464,28 +279,25 @@ template <class Scalar>
 Answers evaluate_as(const Batch& batch, const Coverage& coverage, const Context& context) {
     std::optional<FullSpectrum<Scalar>> spectrum;
     std::size_t solved_for = batch.problems.size();
-    return answer_each(batch, coverage, [&](std::size_t p, const Query& query) -> Answer {
-        const auto start = std::chrono::steady_clock::now();
-        const Problem& problem = batch.problems[p];
-        if (!spectrum || (!spectrum->field_commutes() && solved_for != p)) {
-            spectrum.emplace(problem, context);
-            solved_for = p;
-        }
-        poll(context);
-        Answer answer = Evaluator<Scalar>(problem, *spectrum)(query);
-        if (Reference* reference = std::get_if<Reference>(&answer)) {
-            reference->route = RouteId::dense;
-            reference->seconds =
-                std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
-        }
-        return answer;
-    });
+    return answer_each(
+        RouteId::dense, batch, coverage, [&](std::size_t p, const Query& query) -> Answer {
+            const Problem& problem = batch.problems[p];
+            if (!spectrum || (!spectrum->field_commutes() && solved_for != p)) {
+                spectrum.emplace(problem, context);
+                solved_for = p;
+            }
+            poll(context);
+            return Evaluator<Scalar>(problem, *spectrum)(query);
+        });
 }
 
 Answers evaluate(const Batch& batch, const Context& context) {
     const Coverage coverage = plan(batch);
     if (!coverage.covers_any()) {
-        return answer_each(batch, coverage, [](std::size_t, const Query&) -> Answer { return {}; });
+        return answer_each(
+            RouteId::dense, batch, coverage, [](std::size_t, const Query&) -> Answer {
+                return {};
+            });
     }
     return is_real(*batch.problems.front().terms)
                ? evaluate_as<double>(batch, coverage, context)

@@ -1,5 +1,4 @@
 #include <algorithm>
-#include <chrono>
 #include <cmath>
 #include <optional>
 
@@ -137,37 +136,23 @@ Coverage plan_fermion(const Batch& batch) {
     return coverage;
 }
 
-double seconds_since(std::chrono::steady_clock::time_point start) {
-    return std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
-}
-
 Answers evaluate_fermion(const Batch& batch, const Context& context) {
-    using Clock = std::chrono::steady_clock;
-    const Coverage coverage = plan_fermion(batch);
     std::optional<fermion::Solution> solution;
-    double shared_seconds = 0.0;
-    if (coverage.covers_any()) {
-        const auto start = Clock::now();
-        const Problem& first = batch.problems.front();
-        solution = fermion::solve(*fermion::recognise(first.chain, *first.terms), context);
-        shared_seconds = seconds_since(start) / static_cast<double>(batch.problems.size());
-    }
     std::optional<fermion::Point> point;
     std::size_t of_problem = batch.problems.size();
-    return answer_each(batch, coverage, [&](std::size_t p, const Query& query) {
+    const auto answer = [&](std::size_t p, const Query& query) {
         poll(context);
-        const auto start = Clock::now();
+        if (!solution) {
+            const Problem& first = batch.problems.front();
+            solution = fermion::solve(*fermion::recognise(first.chain, *first.terms), context);
+        }
         if (of_problem != p) {
             point.emplace(*solution, batch.problems[p], context);
             of_problem = p;
         }
-        Answer answer = point->answer(query);
-        if (auto* reference = std::get_if<Reference>(&answer)) {
-            reference->route = RouteId::fermion;
-            reference->seconds = seconds_since(start) + shared_seconds;
-        }
-        return answer;
-    });
+        return point->answer(query);
+    };
+    return answer_each(RouteId::fermion, batch, plan_fermion(batch), answer);
 }
 
 }  // namespace

@@ -1,4 +1,3 @@
-#include <chrono>
 #include <cmath>
 #include <optional>
 
@@ -245,18 +244,15 @@ Coverage plan_limit(const Batch& batch) {
 }
 
 Answers evaluate_limit(const Batch& batch, const Context& context) {
-    using Clock = std::chrono::steady_clock;
-    return answer_each(batch, plan_limit(batch), [&](std::size_t p, const Query& query) -> Answer {
-        poll(context);
-        const auto start = Clock::now();
-        const Problem& problem = batch.problems[p];
-        const XxChain chain = *recognise(problem).chain;
-        Reference reference = answer(chain, query);
-        reference.approach = approach(chain, problem.chain, query.spec->id);
-        reference.route = RouteId::limit;
-        reference.seconds = std::chrono::duration<double>(Clock::now() - start).count();
-        return reference;
-    });
+    return answer_each(
+        RouteId::limit, batch, plan_limit(batch), [&](std::size_t p, const Query& query) -> Answer {
+            poll(context);
+            const Problem& problem = batch.problems[p];
+            const XxChain chain = *recognise(problem).chain;
+            Reference reference = answer(chain, query);
+            reference.approach = approach(chain, problem.chain, query.spec->id);
+            return reference;
+        });
 }
 
 }  // namespace

@@ -92,7 +92,9 @@ void store_all(State& state, const Job& job, const Answers& answers) {
 /// The same answer everywhere; where the route does not cover a query it says so as always.
 Answers same_everywhere(const Job& job, const Answer& answer) {
     return answer_each(
-        job.bundle->batch, job.coverage, [&](std::size_t, const Query&) { return answer; });
+        job.route->id, job.bundle->batch, job.coverage, [&](std::size_t, const Query&) {
+            return answer;
+        });
 }
 
 /// Waits until the job's memory is free; nothing where it never will be.

@@ -90,4 +90,60 @@ const QuantitySpec& spec_of(QuantityId id) {
     return *at;
 }
 
+std::string to_string(OptionId option) {
+    switch (option) {
+        case OptionId::count:
+            return "count";
+        case OptionId::axis:
+            return "axis";
+        case OptionId::axes:
+            return "axes";
+        case OptionId::distance:
+            return "distance";
+        case OptionId::pairs:
+            return "pairs";
+        case OptionId::connected:
+            return "connected";
+        case OptionId::parity:
+            return "parity";
+    }
+    return "";
+}
+
+std::string to_string(Axis axis) {
+    switch (axis) {
+        case Axis::x:
+            return "x";
+        case Axis::y:
+            return "y";
+        case Axis::z:
+            return "z";
+    }
+    return "";
+}
+
+std::string to_string(Parity parity) {
+    switch (parity) {
+        case Parity::ground_state:
+            return "ground_state";
+        case Parity::even:
+            return "even";
+        case Parity::odd:
+            return "odd";
+    }
+    return "";
+}
+
+std::string to_string(Where where) {
+    switch (where) {
+        case Where::finite:
+            return "finite";
+        case Where::infinite:
+            return "infinite";
+        case Where::both:
+            return "both";
+    }
+    return "";
+}
+
 }  // namespace chainmark

@@ -54,6 +54,13 @@ enum class Axis { x, y, z };
 /// Which of the two classes of a ring's up count (and with it of its fermions).
 enum class Parity { ground_state, even, odd };
 
+/// The words of the case format: "count", "axes", ...; "finite", "infinite", "both"; "x", "y", "z";
+/// "even", "odd", "ground_state".
+std::string to_string(OptionId option);
+std::string to_string(Where where);
+std::string to_string(Axis axis);
+std::string to_string(Parity parity);
+
 /// The options of one query. Those that the quantity does not take keep their defaults.
 struct Options {
     int count = 1;                                ///< levels: how many

@@ -1,5 +1,6 @@
 #pragma once
 
+#include <chrono>
 #include <string>
 #include <string_view>
 #include <vector>
@@ -45,16 +46,25 @@ struct Route {
 Coverage refuse_all(const Batch& batch, const std::string& reason);
 
 /// The routine part of `evaluate`: for every query that `coverage` accepts, answer(problem index,
-/// query); NotCovered for the others.
+/// query) with the route's id and the time it took; NotCovered for the others.
 template <class AnswerFunction>
-Answers answer_each(const Batch& batch, const Coverage& coverage, AnswerFunction&& answer) {
+Answers answer_each(RouteId route,
+                    const Batch& batch,
+                    const Coverage& coverage,
+                    AnswerFunction&& answer) {
+    using Clock = std::chrono::steady_clock;
     Answers answers(batch.problems.size());
     for (std::size_t p = 0; p < batch.problems.size(); ++p) {
         for (std::size_t q = 0; q < batch.queries.size(); ++q) {
-            if (coverage.refusal[q].empty()) {
-                answers[p].push_back(answer(p, batch.queries[q]));
-            } else {
+            if (!coverage.refusal[q].empty()) {
                 answers[p].push_back(NotCovered{coverage.refusal[q]});
+                continue;
+            }
+            const auto start = Clock::now();
+            answers[p].push_back(answer(p, batch.queries[q]));
+            if (auto* reference = std::get_if<Reference>(&answers[p].back())) {
+                reference->route = route;
+                reference->seconds = std::chrono::duration<double>(Clock::now() - start).count();
             }
         }
     }

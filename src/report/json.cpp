@@ -164,7 +164,7 @@ Json options_json(const Query& query) {
     for (const OptionId option : query.spec->options) {
         Json value = option_json(option, query.options);
         if (!value.is_array() || !value.empty()) {  // `distance` or `pairs`, whichever was given
-            json[option_key(option)] = std::move(value);
+            json[to_string(option)] = std::move(value);
         }
     }
     return json;

@@ -40,62 +40,6 @@ std::string option_text(OptionId option, const Options& given) {
 
 }  // namespace
 
-std::string option_key(OptionId option) {
-    switch (option) {
-        case OptionId::count:
-            return "count";
-        case OptionId::axis:
-            return "axis";
-        case OptionId::axes:
-            return "axes";
-        case OptionId::distance:
-            return "distance";
-        case OptionId::pairs:
-            return "pairs";
-        case OptionId::connected:
-            return "connected";
-        case OptionId::parity:
-            return "parity";
-    }
-    return "";
-}
-
-std::string to_string(Axis axis) {
-    switch (axis) {
-        case Axis::x:
-            return "x";
-        case Axis::y:
-            return "y";
-        case Axis::z:
-            return "z";
-    }
-    return "";
-}
-
-std::string to_string(Parity parity) {
-    switch (parity) {
-        case Parity::ground_state:
-            return "ground_state";
-        case Parity::even:
-            return "even";
-        case Parity::odd:
-            return "odd";
-    }
-    return "";
-}
-
-std::string to_string(Where where) {
-    switch (where) {
-        case Where::finite:
-            return "finite";
-        case Where::infinite:
-            return "infinite";
-        case Where::both:
-            return "both";
-    }
-    return "";
-}
-
 std::string boundary_text(const Case& c) {
     if (c.boundary == BoundaryKind::open) {
         return "open";

@@ -8,18 +8,6 @@
 /// The words of the case format, for output.
 namespace chainmark {
 
-/// The key of an option in a [[quantity]] table: "count", "axes", ...
-std::string option_key(OptionId option);
-
-/// "x", "y", "z".
-std::string to_string(Axis axis);
-
-/// "even", "odd", "ground_state".
-std::string to_string(Parity parity);
-
-/// "finite", "infinite", "both".
-std::string to_string(Where where);
-
 /// "open", "periodic", "antiperiodic", "twist 0.4".
 std::string boundary_text(const Case& c);
 

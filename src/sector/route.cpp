@@ -1,7 +1,6 @@
 #include "chainmark/sector/route.hpp"
 
 #include <algorithm>
-#include <chrono>
 #include <cmath>
 #include <set>
 #include <stdexcept>
@@ -359,33 +358,28 @@ Answers evaluate(const Batch& batch, const Context& context) {
     const Coverage coverage = plan(batch);
     std::optional<Solution> solution;
     std::size_t solved_for = batch.problems.size();
-    return answer_each(batch, coverage, [&](std::size_t p, const Query& query) -> Answer {
-        const auto start = std::chrono::steady_clock::now();
-        const Problem& problem = batch.problems[p];
-        if (!solution || (!solution->field_outside() && solved_for != p)) {
-            solution.emplace(problem, context);
-            solved_for = p;
-        }
-        poll(context);
-        if (out_of_reach(query, solution->symmetries(), problem.chain)) {
-            return Undecided{fmt::format(
-                "complex Hamiltonian ({}) with more than {} states in a sector: no solver for its "
-                "lowest levels",
-                solution->symmetries().why_not_real,
-                Block::complex_dense_limit)};
-        }
-        try {
-            Answer answer = Evaluator(problem, *solution)(query);
-            if (Reference* reference = std::get_if<Reference>(&answer)) {
-                reference->route = RouteId::sector;
-                reference->seconds =
-                    std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
+    return answer_each(
+        RouteId::sector, batch, coverage, [&](std::size_t p, const Query& query) -> Answer {
+            const Problem& problem = batch.problems[p];
+            if (!solution || (!solution->field_outside() && solved_for != p)) {
+                solution.emplace(problem, context);
+                solved_for = p;
             }
-            return answer;
-        } catch (const std::runtime_error& failure) {
-            return Undecided{failure.what()};
-        }
-    });
+            poll(context);
+            if (out_of_reach(query, solution->symmetries(), problem.chain)) {
+                return Undecided{
+                    fmt::format("complex Hamiltonian ({}) with more than {} states in a sector: no "
+                                "solver for its "
+                                "lowest levels",
+                                solution->symmetries().why_not_real,
+                                Block::complex_dense_limit)};
+            }
+            try {
+                return Evaluator(problem, *solution)(query);
+            } catch (const std::runtime_error& failure) {
+                return Undecided{failure.what()};
+            }
+        });
 }
 
 }  // namespace
