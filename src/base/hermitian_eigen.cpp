@@ -6,6 +6,7 @@
 
 #include <fmt/format.h>
 
+// LAPACK's own names. NOLINTBEGIN(readability-identifier-naming)
 extern "C" {
 void dsyevd_(const char* job,
              const char* triangle,
@@ -32,6 +33,7 @@ void zheevd_(const char* job,
              const int* liwork,
              int* info);
 }
+// NOLINTEND(readability-identifier-naming)
 
 namespace chainmark {
 namespace {

@@ -116,6 +116,7 @@ void compare_pair(const Reference& a,
             compare_numbers(a_is_better ? a : b, a_is_better ? b : a, i, tolerance);
         if (one.verdict > total.verdict) {
             total.reason = one.reason;
+            total.element = i;
         }
         total.verdict = worse(total.verdict, one.verdict);
         total.digits = std::min(total.digits.value_or(one.digits), one.digits);

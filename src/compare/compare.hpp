@@ -24,6 +24,7 @@ struct Comparison {
     std::optional<double> difference;  ///< largest |a - b| over routes and elements
     std::optional<double> allowed;     ///< the tolerance there
     std::optional<double> digits;      ///< fewest agreeing digits over routes and elements
+    std::size_t element = 0;           ///< of an array: the one that decided the verdict
     std::string reason;                ///< in words, where the verdict is `differ` or `undecided`
 };
 

@@ -26,31 +26,30 @@ std::vector<LogPoint> resolved(const std::vector<SizePoint>& sizes, double limit
     return points;
 }
 
+/// The exponent that two sizes alone would give, and where on the 1/L axis it stands.
+struct LocalSlope {
+    double inverse_size;
+    double exponent;
+};
+
+LocalSlope local_slope(const LogPoint& a, const LogPoint& b) {
+    return {std::exp(-(a.log_size + b.log_size) / 2),
+            -(b.log_distance - a.log_distance) / (b.log_size - a.log_size)};
+}
+
 std::optional<Trend> power_trend(const std::vector<LogPoint>& points, double expected) {
     if (points.size() < fewest_sizes) {
         return std::nullopt;
     }
-    const auto n = static_cast<double>(points.size());
-    double mean_x = 0.0;
-    double mean_y = 0.0;
-    for (const LogPoint& p : points) {
-        mean_x += p.log_size / n;
-        mean_y += p.log_distance / n;
-    }
-    double covariance = 0.0;
-    double variance = 0.0;
-    for (const LogPoint& p : points) {
-        covariance += (p.log_size - mean_x) * (p.log_distance - mean_y);
-        variance += (p.log_size - mean_x) * (p.log_size - mean_x);
-    }
+    const std::size_t n = points.size();
+    const LocalSlope before = local_slope(points[n - 3], points[n - 2]);
+    const LocalSlope last = local_slope(points[n - 2], points[n - 1]);
+    const double drift =
+        (before.exponent - last.exponent) / (before.inverse_size - last.inverse_size);
     Trend trend;
     trend.trend = "exponent";
-    trend.value = -covariance / variance;
-    for (std::size_t i = 1; i < points.size(); ++i) {
-        const double slope = -(points[i].log_distance - points[i - 1].log_distance) /
-                             (points[i].log_size - points[i - 1].log_size);
-        trend.error = std::max(trend.error, std::abs(slope - trend.value));
-    }
+    trend.value = last.exponent - drift * last.inverse_size;
+    trend.error = std::abs(trend.value - last.exponent);
     trend.expected = expected;
     return trend;
 }

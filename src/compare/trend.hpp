@@ -29,8 +29,9 @@ struct SizePoint {
 };
 
 /// How values of sizes of one parity approach the infinite chain's `limit`, by the law expected.
-///   power:    the exponent p of |value - limit| ~ L^-p by least squares of log against log; the
-///             error is the largest deviation of a local slope (between neighbouring sizes).
+///   power:    the exponent p of |value - limit| ~ L^-p. The local exponents of neighbouring sizes
+///             drift with 1/L; the last two are continued linearly to 1/L = 0, and the error is the
+///             distance from the last one.
 ///   envelope: the smallest c with |value - limit| <= c L^-exponent at every size, the error from
 ///             the bounds.
 /// Nothing where fewer than three sizes lie outside their bounds, for a power law.

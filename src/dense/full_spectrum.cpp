@@ -11,26 +11,18 @@
 namespace chainmark::dense {
 namespace {
 
-template <class Scalar>
-struct Size {
-    double row_sum = 0.0;  ///< largest sum of |elements| of a row, an upper bound of the 2-norm
-    int longest_row = 0;
-};
-
-template <class Scalar>
-Size<Scalar> size_of(const FullMatrix<Scalar>& matrix) {
-    Size<Scalar> size;
-    for (Eigen::Index row = 0; row < matrix.rows(); ++row) {
-        double sum = 0.0;
-        int count = 0;
-        for (typename FullMatrix<Scalar>::InnerIterator it(matrix, row); it; ++it) {
-            sum += std::abs(it.value());
-            ++count;
+/// sum_i |coefficient_i| ||string_i||: an upper bound of ||H|| and the scale of its rounding, also
+/// where contributions cancel.
+double weight_of(const std::vector<Term>& terms) {
+    double weight = 0.0;
+    for (const Term& term : terms) {
+        double norm = std::abs(term.coefficient);
+        for (const SiteFactor& factor : term.string) {
+            norm *= factor.op == SiteOperator::z ? 0.5 : 1.0;
         }
-        size.row_sum = std::max(size.row_sum, sum);
-        size.longest_row = std::max(size.longest_row, count);
+        weight += norm;
     }
-    return size;
+    return weight;
 }
 
 /// [H, M]_{ab} = H_ab (M_b - M_a)
@@ -63,30 +55,31 @@ double real_part(std::complex<double> x) {
 template <class Scalar>
 FullSpectrum<Scalar>::FullSpectrum(const Problem& problem, const Context& context)
     : length_(problem.chain.length()), total_sz_(dense::total_sz(length_)) {
-    FullMatrix<Scalar> hamiltonian = full_matrix<Scalar>(problem.terms->terms, length_);
+    std::vector<Term> terms = problem.terms->terms;
+    FullMatrix<Scalar> hamiltonian = full_matrix<Scalar>(terms, length_);
     poll(context);
     commutes_ = commutes(hamiltonian, total_sz_);
     if (!commutes_) {
-        hamiltonian = full_matrix<Scalar>(full_terms(problem).terms, length_);
+        terms = full_terms(problem).terms;
+        hamiltonian = full_matrix<Scalar>(terms, length_);
     }
-    const double lift = commutes_ ? 2 * size_of(hamiltonian).row_sum + 1.0 : 0.0;
-    solve(hamiltonian, problem.terms->constant, lift);
+    const double weight = weight_of(terms);
+    const double noise = static_cast<double>(terms.size() + 2) * epsilon / 2 * weight;
+    solve(hamiltonian, commutes_ ? 2 * weight + 1.0 : 0.0, noise);
+    energies_.array() += problem.terms->constant;
+    bounds_.array() += epsilon * std::abs(problem.terms->constant);
     poll(context);
 }
 
 template <class Scalar>
-void FullSpectrum<Scalar>::solve(const FullMatrix<Scalar>& hamiltonian,
-                                 double constant,
-                                 double lift) {
+void FullSpectrum<Scalar>::solve(const FullMatrix<Scalar>& hamiltonian, double lift, double noise) {
     Vectors lifted = Vectors(hamiltonian);
     lifted.diagonal() += (lift * total_sz_).template cast<Scalar>();
     vectors_ = hermitian_eigen(std::move(lifted)).vectors;
 
     // Energies are Rayleigh quotients with H itself, so the lift costs no digits; the residual is
-    // measured with H too. Its own rounding is at most (m + 2) u || |H| || for m elements a row.
+    // measured with H too.
     const Eigen::Index n = vectors_.cols();
-    const Size<Scalar> size = size_of(hamiltonian);
-    const double noise = (size.longest_row + 2) * epsilon * size.row_sum;
     energies_.resize(n);
     residuals_.resize(n);
     sz_.resize(n);
@@ -106,8 +99,6 @@ void FullSpectrum<Scalar>::solve(const FullMatrix<Scalar>& hamiltonian,
     const Eigen::VectorXd sorted = cluster_bounds(energies_(order), residuals_(order));
     bounds_.resize(n);
     bounds_(order) = sorted;
-    energies_.array() += constant;
-    bounds_.array() += epsilon * std::abs(constant);
 }
 
 template <class Scalar>

@@ -51,7 +51,8 @@ public:
                               const std::vector<Eigen::Index>& of) const;
 
 private:
-    void solve(const FullMatrix<Scalar>& hamiltonian, double constant, double lift);
+    /// Diagonalizes hamiltonian + lift M; `noise` bounds the rounding of a residual.
+    void solve(const FullMatrix<Scalar>& hamiltonian, double lift, double noise);
 
     int length_;
     bool commutes_ = false;

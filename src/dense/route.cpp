@@ -262,7 +262,9 @@ Coverage plan(const Batch& batch) {
     for (std::size_t q = 0; q < batch.queries.size(); ++q) {
         const QuantityId id = batch.queries[q].spec->id;
         if (!covers(id)) {
-            coverage.refusal[q] = "a quantity of free fermions or of the infinite chain";
+            coverage.refusal[q] = id == QuantityId::mode_energies
+                                      ? "a quantity of free fermions"
+                                      : "a quantity of the infinite chain";
         } else if (needs_conserved_sz(id) && !conserved) {
             coverage.refusal[q] = "needs a Hamiltonian that conserves Sz";
         }

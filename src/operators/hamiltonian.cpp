@@ -114,16 +114,22 @@ std::string sites_text(const std::set<int>& sites) {
 }
 
 Error short_chain(const PlacedTerm& term, const Chain& chain) {
+    if (term.fixed) {
+        return {ErrorCode::bad_chain,
+                term.where,
+                fmt::format("there is no site {} on the {}", range_of(term), to_string(chain)),
+                fmt::format("sites are 0 ... {}", chain.length() - 1)};
+    }
     const int needed = range_of(term) + 1;
     return {ErrorCode::bad_chain,
-            {},
+            term.where,
             fmt::format("a term reaches over {} sites, more than the {}", needed, to_string(chain)),
             fmt::format("at least {} sites are needed", needed)};
 }
 
-Error coinciding(const std::set<int>& sites, const Chain& chain) {
+Error coinciding(const std::set<int>& sites, const PlacedTerm& term, const Chain& chain) {
     return {ErrorCode::bad_chain,
-            {},
+            term.where,
             fmt::format("on the {} two placements of the same term meet on the sites {}",
                         to_string(chain),
                         sites_text(sites)),
@@ -177,7 +183,7 @@ Result<TermList> build_terms(const Chain& chain,
             }
             if (!seen.insert(sites).second) {
                 if (coincident == Coincident::refuse) {
-                    return tl::unexpected(coinciding(sites, chain));
+                    return tl::unexpected(coinciding(sites, term, chain));
                 }
                 if (coincident == Coincident::once) {
                     continue;

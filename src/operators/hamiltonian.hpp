@@ -27,6 +27,7 @@ struct PlacedTerm {
     std::vector<std::complex<double>> coupling;  ///< one for all placements, or one per placement
     bool fixed = false;                          ///< a single placement: `offsets` are the sites
     bool add_conjugate = false;
+    Place where = {};  ///< for messages
 };
 
 /// A parameter of a family.

@@ -46,6 +46,12 @@ Expansion times(const Expansion& left, int site, const SiteMatrix& matrix) {
     return product;
 }
 
+/// "0.5", "0.5+0.2j"
+std::string coefficient_text(Complex x) {
+    return x.imag() == 0.0 ? fmt::format("{}", x.real() + 0.0)
+                           : fmt::format("{}{:+}j", x.real() + 0.0, x.imag());
+}
+
 SiteMatrix adjoint(const SiteMatrix& matrix) {
     const auto& [dd, du, ud, uu] = matrix.entries;
     return {{std::conj(dd), std::conj(ud), std::conj(du), std::conj(uu)}};
@@ -208,14 +214,12 @@ Result<TermList> TermCollector::finish() const {
             return tl::unexpected(Error{
                 ErrorCode::not_hermitian,
                 {},
-                fmt::format("the Hamiltonian is not Hermitian: {} has coefficient {}{:+}i but its "
-                            "conjugate {} has {}{:+}i",
+                fmt::format("the Hamiltonian is not Hermitian: {} has the coefficient {}, but its "
+                            "conjugate {} has {}",
                             to_string(string),
-                            sum.value.real(),
-                            sum.value.imag(),
+                            coefficient_text(sum.value),
                             to_string(conjugate(string)),
-                            mirrored.real(),
-                            -mirrored.imag()),
+                            coefficient_text(std::conj(mirrored))),
                 "add the missing term, or set add_conjugate = true"});
         }
         // The two halves of a conjugate pair are averaged so that H is Hermitian to the last bit.

@@ -60,7 +60,8 @@ Result<PlacedTerm> placed_term(const CaseTerm& term,
                       .offsets = term.offsets,
                       .coupling = {},
                       .fixed = term.fixed,
-                      .add_conjugate = term.add_conjugate};
+                      .add_conjugate = term.add_conjugate,
+                      .where = term.where};
     const int count = placement_count(placed, chain, cell);
     if (const auto* numbers = std::get_if<std::vector<std::complex<double>>>(&term.coupling)) {
         if (numbers->size() != 1 && numbers->size() != static_cast<std::size_t>(count)) {

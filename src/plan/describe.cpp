@@ -47,13 +47,14 @@ std::string Plan::describe() const {
             "{}  {}\n  {} points\n", layout.source->name, layout.source->title, layout.rows.size());
         const Bundle* last = nullptr;
         for (const Job& job : work_->jobs) {
-            if (job.bundle->case_index != c || job.bundle->beside) {
+            if (job.bundle->case_index != c) {
                 continue;
             }
             if (job.bundle != last) {
                 const auto& problems = job.bundle->batch.problems;
-                text += fmt::format("  {}, {} field{}\n",
+                text += fmt::format("  {}{}, {} field{}\n",
                                     to_string(problems.front().chain),
+                                    job.bundle->beside ? " beside the finite ones" : "",
                                     problems.size(),
                                     problems.size() == 1 ? "" : "s");
                 last = job.bundle;

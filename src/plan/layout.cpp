@@ -164,11 +164,19 @@ bool is_wanted(const Case& c, RouteId route) {
     return c.routes.empty() || std::find(c.routes.begin(), c.routes.end(), route) != c.routes.end();
 }
 
+/// Route `limit` speaks of infinite chains alone, and alone stands beside finite ones.
+bool is_meant_for(RouteId route, const Bundle& bundle) {
+    if (route == RouteId::limit) {
+        return bundle.batch.problems.front().chain.is_infinite();
+    }
+    return !bundle.beside;
+}
+
 void add_jobs(Plan::Work& work) {
     for (const auto& bundle : work.bundles) {
         for (const Route& route : routes()) {
-            const bool right_kind = !bundle->beside || route.id == RouteId::limit;
-            if (right_kind && is_wanted(*work.cases[bundle->case_index].source, route.id)) {
+            if (is_meant_for(route.id, *bundle) &&
+                is_wanted(*work.cases[bundle->case_index].source, route.id)) {
                 work.jobs.push_back({bundle.get(), &route, route.plan(bundle->batch)});
             }
         }

@@ -14,7 +14,12 @@ namespace {
 
 constexpr double big_job_seconds = 1.0;                 ///< from here on a job gets all threads
 constexpr auto grace = std::chrono::milliseconds(600);  ///< for workers after a stop request
-constexpr double gibibyte = 1024.0 * 1024 * 1024;
+
+std::string size_text(double bytes) {
+    constexpr double mebibyte = 1024.0 * 1024;
+    return bytes < 100 * mebibyte ? fmt::format("{:.2g} MiB", bytes / mebibyte)
+                                  : fmt::format("{:.2g} GiB", bytes / mebibyte / 1024);
+}
 
 /// Everything that workers touch. Kept alive by every worker, so that one that cannot be stopped
 /// (inside a library call) can be left behind.
@@ -117,10 +122,9 @@ Answers evaluate(const Job& job, const Context& context) {
     if (!lease) {
         return same_everywhere(
             job,
-            Undecided{fmt::format("needs about {:.2g} GiB, more than the budget of {:.2g} GiB "
-                                  "(--memory)",
-                                  job.coverage.bytes / gibibyte,
-                                  context.memory->limit() / gibibyte)});
+            Undecided{fmt::format("needs about {}, more than the budget of {} (--memory)",
+                                  size_text(job.coverage.bytes),
+                                  size_text(context.memory->limit()))});
     }
     try {
         return job.route->evaluate(job.bundle->batch, context);

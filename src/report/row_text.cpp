@@ -70,27 +70,6 @@ std::string total_sz_below(const Reference& reference) {
     return list_below("total Sz", elements);
 }
 
-/// The element on which two routes lie furthest apart.
-std::size_t worst_element(const std::vector<Reference>& references) {
-    std::size_t worst = 0;
-    double spread = -1.0;
-    for (const Reference& a : references) {
-        for (const Reference& b : references) {
-            const std::size_t size = std::min(a.value.data.size(), b.value.data.size());
-            for (std::size_t i = 0; i < size; ++i) {
-                const bool alike = shown_status(a.value, i) == shown_status(b.value, i);
-                const double apart = alike ? std::abs(a.value.data[i] - b.value.data[i])
-                                           : std::numeric_limits<double>::infinity();
-                if (apart > spread) {
-                    spread = apart;
-                    worst = i;
-                }
-            }
-        }
-    }
-    return worst;
-}
-
 /// One route's own value, of an array the given element.
 std::string own_value(const Reference& reference, std::size_t element) {
     const Value& value = reference.value;
@@ -104,7 +83,8 @@ std::string own_value(const Reference& reference, std::size_t element) {
         return fmt::format("{} values", value.data.size());
     }
     const bool ordinary = shown_status(value, element) == Special::none;
-    return size + element_text(reference, element, 15) +
+    return size +
+           (ordinary ? number_text(value.real_at(element)) : element_text(reference, element, 15)) +
            (ordinary ? fmt::format(" +- {:.2g}", bound_at(reference, element)) : "") +
            fmt::format(" ({})", to_string(reference.basis));
 }
@@ -116,7 +96,7 @@ std::string reason_below(const QuantityResult& result) {
     std::string lines =
         note(to_string(result.comparison.verdict) + ": " + result.comparison.reason);
     if (result.references.size() > 1) {
-        const std::size_t element = worst_element(result.references);
+        const std::size_t element = result.comparison.element;
         for (const Reference& reference : result.references) {
             lines += std::string(note_indent, ' ') + padded(to_string(reference.route), 8) +
                      own_value(reference, element) + '\n';
@@ -145,11 +125,14 @@ std::string value_cell(const Reference& reference) {
 
 std::string bound_cell(const Reference& reference) {
     double largest = 0.0;
+    bool any_ordinary = false;
     for (std::size_t i = 0; i < reference.bound.size(); ++i) {
         const bool ordinary = shown_status(reference.value, i) == Special::none;
+        any_ordinary = any_ordinary || ordinary;
         largest = ordinary ? std::max(largest, reference.bound[i]) : largest;
     }
-    return reference.value.kind == Kind::text ? "" : fmt::format("{:.1g}", largest);
+    const bool is_number = reference.value.kind != Kind::text && any_ordinary;
+    return is_number ? fmt::format("{:.1g}", largest) : "";
 }
 
 std::string lines_below(const QuantityResult& result) {

@@ -51,19 +51,24 @@ Reduced reduce(std::uint64_t state, int length) {
     return best;
 }
 
+struct MomentumBlock {
+    Eigen::MatrixXcd matrix;
+    /// Largest sum over a column of |contributions|, before they cancel: the scale of rounding.
+    double weight = 0.0;
+};
+
 class BlockBuilder {
 public:
     BlockBuilder(const Chain& chain, const std::vector<BitTerm>& terms)
         : chain_(chain), terms_(terms) {}
 
-    Eigen::MatrixXcd build(const SectorLabel& sector,
-                           const std::vector<Orbit>& orbits,
-                           int n) const {
+    MomentumBlock build(const SectorLabel& sector, const std::vector<Orbit>& orbits, int n) const {
         const int length = chain_.length();
         const double k = (2 * pi * n + chain_.twist * sector.value) / length;
         const auto size = static_cast<Eigen::Index>(orbits.size());
-        Eigen::MatrixXcd block = Eigen::MatrixXcd::Zero(size, size);
+        MomentumBlock block{Eigen::MatrixXcd::Zero(size, size)};
         for (Eigen::Index column = 0; column < size; ++column) {
+            double weight = 0.0;
             const Orbit& a = orbits[static_cast<std::size_t>(column)];
             for (const BitTerm& term : terms_) {
                 if (!term.acts_on(a.representative)) {
@@ -79,10 +84,12 @@ public:
                 }
                 // T^l |b> = exp(-i twist carried) |s>, so |s> = exp(+i twist carried) T^l |b>.
                 const Complex phase = std::polar(1.0, chain_.twist * to.carried - k * to.steps);
-                block(at - orbits.begin(), column) +=
-                    term.amplitude(a.representative) * phase *
-                    std::sqrt(static_cast<double>(a.period) / at->period);
+                const Complex contribution = term.amplitude(a.representative) * phase *
+                                             std::sqrt(static_cast<double>(a.period) / at->period);
+                block.matrix(at - orbits.begin(), column) += contribution;
+                weight += std::abs(contribution);
             }
+            block.weight = std::max(block.weight, weight);
         }
         return block;
     }
@@ -93,14 +100,13 @@ private:
 };
 
 /// Eigenvalues with bounds from measured residuals.
-std::vector<LabelledLevel> solved(const Eigen::MatrixXcd& block) {
-    const HermitianEigen<Complex> solution = hermitian_eigen(block);
-    const Eigen::Index size = block.rows();
-    const double norm = block.cwiseAbs().rowwise().sum().maxCoeff();
-    // The elements carry a few roundings each (phases, roots), the product one per element.
-    const double noise = 16 * epsilon * norm;
+std::vector<LabelledLevel> solved(const MomentumBlock& block) {
+    const HermitianEigen<Complex> solution = hermitian_eigen(block.matrix);
+    const Eigen::Index size = block.matrix.rows();
+    // Every contribution carries a few roundings (its phase and root, the sums, the product).
+    const double noise = 16 * epsilon * block.weight;
     const Eigen::VectorXd residuals =
-        (block * solution.vectors - solution.vectors * solution.values.asDiagonal())
+        (block.matrix * solution.vectors - solution.vectors * solution.values.asDiagonal())
             .colwise()
             .norm()
             .transpose()

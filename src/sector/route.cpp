@@ -274,15 +274,28 @@ private:
 std::string refusal(const Query& query, const Symmetries& symmetries, const Chain& chain) {
     const QuantityId id = query.spec->id;
     if (!covers(id)) {
-        return "a quantity of free fermions or of the infinite chain";
+        return id == QuantityId::mode_energies ? "a quantity of free fermions"
+                                               : "a quantity of the infinite chain";
     }
     const bool sz = symmetries.conserved == Conserved::up_count;
     if (!sz && (id == QuantityId::susceptibility || id == QuantityId::jump_fields)) {
         return "needs a Hamiltonian that conserves Sz; " + symmetries.why_no_sz;
     }
-    if (id == QuantityId::spectrum && !Solution::can_solve_completely(symmetries, chain)) {
+    const bool complete = Solution::can_solve_completely(symmetries, chain);
+    if (id == QuantityId::spectrum && !complete) {
         return fmt::format("all levels at once need blocks of at most {} states",
                            Block::complex_dense_limit);
+    }
+    const bool complete_list = id == QuantityId::spectrum || id == QuantityId::levels;
+    const double states = largest_sector(symmetries.conserved, chain.length());
+    if (!symmetries.real && states > Block::complex_dense_limit && !(complete_list && complete)) {
+        return fmt::format(
+            "complex Hamiltonian ({}): lowest levels are found in sectors of at most {} states, "
+            "this "
+            "chain has {:.0f}",
+            symmetries.why_not_real,
+            Block::complex_dense_limit,
+            states);
     }
     return {};
 }
@@ -343,17 +356,6 @@ Coverage plan(const Batch& batch) {
     return coverage;
 }
 
-/// Questions that need the lowest levels of a complex sector too large to be solved completely.
-bool out_of_reach(const Query& query, const Symmetries& symmetries, const Chain& chain) {
-    const bool complete_lists =
-        query.spec->id == QuantityId::levels || query.spec->id == QuantityId::spectrum;
-    if (complete_lists && Solution::can_solve_completely(symmetries, chain)) {
-        return false;
-    }
-    return !symmetries.real &&
-           largest_sector(symmetries.conserved, chain.length()) > Block::complex_dense_limit;
-}
-
 Answers evaluate(const Batch& batch, const Context& context) {
     const Coverage coverage = plan(batch);
     std::optional<Solution> solution;
@@ -366,14 +368,6 @@ Answers evaluate(const Batch& batch, const Context& context) {
                 solved_for = p;
             }
             poll(context);
-            if (out_of_reach(query, solution->symmetries(), problem.chain)) {
-                return Undecided{
-                    fmt::format("complex Hamiltonian ({}) with more than {} states in a sector: no "
-                                "solver for its "
-                                "lowest levels",
-                                solution->symmetries().why_not_real,
-                                Block::complex_dense_limit)};
-            }
             try {
                 return Evaluator(problem, *solution)(query);
             } catch (const std::runtime_error& failure) {

@@ -16,8 +16,8 @@ std::complex<double> conjugated(std::complex<double> x, std::complex<double>) {
     return std::conj(x);
 }
 
-/// Calls entry(column, value) for every element of one row. H is Hermitian, so the row of `state`
-/// is the conjugate of its column: where the strings take `state` to.
+/// Calls entry(column, value, sum of |contributions|) for every element of one row. H is Hermitian,
+/// so the row of `state` is the conjugate of its column: where the strings take `state` to.
 template <class Scalar, class Entry>
 void visit_row(const SectorBasis& basis,
                const std::vector<BitTerm>& terms,
@@ -27,13 +27,15 @@ void visit_row(const SectorBasis& basis,
     while (i < terms.size()) {
         const std::uint64_t flip = terms[i].flip;
         std::complex<double> sum = 0.0;
+        double weight = 0.0;
         for (; i < terms.size() && terms[i].flip == flip; ++i) {
             if (terms[i].acts_on(state)) {
                 sum += terms[i].amplitude(state);
+                weight += std::abs(terms[i].coefficient);
             }
         }
-        if (sum != 0.0) {
-            entry(basis.rank(state ^ flip), conjugated(sum, Scalar{}));
+        if (weight != 0.0) {
+            entry(basis.rank(state ^ flip), conjugated(sum, Scalar{}), weight);
         }
     }
 }
@@ -47,16 +49,16 @@ SparseMatrix<Scalar> build_matrix(const SectorBasis& basis,
     const std::int64_t dim = basis.dim();
     CHAINMARK_EXPECTS(dim <= std::numeric_limits<std::int32_t>::max());
     SparseMatrix<Scalar> matrix;
+    matrix.n_terms = terms.size();
     matrix.row_start.assign(static_cast<std::size_t>(dim) + 1, 0);
 #pragma omp parallel for num_threads(threads) schedule(static)
     for (std::int64_t row = 0; row < dim; ++row) {
         std::int64_t count = 0;
-        visit_row<Scalar>(basis, terms, basis.state(row), [&](std::int64_t, Scalar) { ++count; });
+        visit_row<Scalar>(
+            basis, terms, basis.state(row), [&](std::int64_t, Scalar, double) { ++count; });
         matrix.row_start[static_cast<std::size_t>(row) + 1] = count;
     }
     for (std::size_t row = 0; row < static_cast<std::size_t>(dim); ++row) {
-        matrix.longest_row =
-            std::max(matrix.longest_row, static_cast<int>(matrix.row_start[row + 1]));
         matrix.row_start[row + 1] += matrix.row_start[row];
     }
     matrix.column.resize(static_cast<std::size_t>(matrix.row_start.back()));
@@ -66,12 +68,13 @@ SparseMatrix<Scalar> build_matrix(const SectorBasis& basis,
     for (std::int64_t row = 0; row < dim; ++row) {
         std::size_t at = static_cast<std::size_t>(matrix.row_start[static_cast<std::size_t>(row)]);
         double sum = 0.0;
-        visit_row<Scalar>(basis, terms, basis.state(row), [&](std::int64_t column, Scalar value) {
+        const auto store = [&](std::int64_t column, Scalar value, double weight) {
             matrix.column[at] = static_cast<std::int32_t>(column);
             matrix.value[at] = value;
-            sum += std::abs(value);
+            sum += weight;
             ++at;
-        });
+        };
+        visit_row<Scalar>(basis, terms, basis.state(row), store);
         largest = std::max(largest, sum);
     }
     matrix.row_sum = largest;
@@ -108,9 +111,10 @@ typename SparseMatrix<Scalar>::Dense SparseMatrix<Scalar>::as_dense() const {
 
 template <class Scalar>
 double SparseMatrix<Scalar>::residual_noise() const {
-    // |fl(Hv) - Hv| <= (m + 2) u |H||v| element by element, m the longest row, and ||(|H|)|| is at
-    // most the largest row sum.
-    return (longest_row + 2) * epsilon * row_sum;
+    // An element of H and of H v is a sum of at most n_terms contributions, so
+    // |fl(Hv) - Hv| <= (n_terms + 2) u sum |contribution| |v|, and the matrix of sums of
+    // |contributions| has a norm of at most its largest row sum.
+    return static_cast<double>(n_terms + 2) * epsilon / 2 * row_sum;
 }
 
 template struct SparseMatrix<double>;

@@ -20,8 +20,10 @@ struct SparseMatrix {
     std::vector<std::int64_t> row_start;  ///< dim + 1 entries
     std::vector<std::int32_t> column;
     std::vector<Scalar> value;
-    double row_sum = 0.0;  ///< largest sum of |elements| of a row: an upper bound of ||H||
-    int longest_row = 0;
+    /// Largest sum over a row of |contributions|, before they cancel: an upper bound of ||H|| and
+    /// the scale of its rounding.
+    double row_sum = 0.0;
+    std::size_t n_terms = 0;  ///< strings that were summed
 
     std::int64_t dim() const { return static_cast<std::int64_t>(row_start.size()) - 1; }
 

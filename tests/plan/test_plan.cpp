@@ -256,7 +256,7 @@ name = "gap"
                              small);
     CHECK(results[0].verdict == Verdict::undecided);
     const auto& not_run = results[0].points[0].quantities[0].not_run;
-    CHECK(not_run[0].reason.find("GiB") != std::string::npos);
+    CHECK(not_run[0].reason.find("MiB, more than the budget of") != std::string::npos);
     CHECK(not_run[0].covers);
 }
 

@@ -3,6 +3,7 @@
 
 #include <doctest/doctest.h>
 
+#include "chainmark/base/hermitian_eigen.hpp"
 #include "chainmark/dense/route.hpp"
 #include "chainmark/sector/krylov.hpp"
 #include "chainmark/sector/route.hpp"
@@ -136,24 +137,61 @@ TEST_CASE("Krylov levels: every copy of a degenerate level is found") {
     CHECK(found[5].value > -4.7356502514508 + 1e-3);
 }
 
-TEST_CASE("level lists from Krylov solves equal those from momentum blocks") {
-    // 13 sites, open: sectors up to 1716 states exceed the dense limit but not the complete one, so
-    // both ways exist.
-    const Problem problem = family_problem("xxz", {1.0, 0.4}, open_chain(13), 0.1);
-    sector::Solution solution(problem, context());
-    const auto krylov = solution.lowest(problem, 12);
-    sector::Solution again(problem, context());
-    const auto complete = again.all_levels(problem);
-    REQUIRE(krylov.size() == 12);
-    for (std::size_t i = 0; i < krylov.size(); ++i) {
-        CHECK_NEAR(
-            krylov[i].energy, complete[i].energy, bound(krylov[i].bound + complete[i].bound));
+TEST_CASE("the twelve lowest levels by Krylov solves are those of LAPACK") {
+    // J1-J2 ring at the Majumdar-Ghosh point, Sz = 0: a degenerate ground level and multiplets
+    const Problem problem = family_problem("j1j2", {1.0, 0.5}, ring(12));
+    const sector::SectorBasis basis({sector::Conserved::up_count, 6}, 12);
+    const auto matrix =
+        sector::build_matrix<double>(basis, sector::bit_terms(problem.terms->terms), 2);
+    const Eigen::VectorXd complete = hermitian_eigen(matrix.as_dense()).values;
+    std::vector<sector::EigenPair> found;
+    for (Eigen::Index i = 0; i < 12; ++i) {
+        found.push_back(sector::lowest_outside(matrix, found, context()));
+        CHECK_NEAR(found.back().value, complete[i], bound(found.back().residual + 1e-13));
+        CHECK(found.back().residual < 1e-11);
     }
+    CHECK_NEAR(complete[1] - complete[0], 0.0, rounding(12.0, 64));
 }
 
-TEST_CASE("a twisted chain with large sectors is undecided, not wrong") {
+TEST_CASE("a list over all sectors is sorted and counts copies") {
+    // Heisenberg ring of 13 sites: sectors of 1716 and 1287 states go through Krylov solves. The
+    // ground level is fourfold, so are its copies in Sz = 1/2 and -1/2 twofold each.
+    const Problem problem = family_problem("heisenberg", {1.0}, ring(13));
+    sector::Solution solution(problem, context());
+    const auto levels = solution.lowest(problem, 6);
+    REQUIRE(levels.size() == 6);
+    for (std::size_t i = 1; i < 4; ++i) {
+        CHECK_NEAR(levels[i].energy, levels[0].energy, bound(levels[i].bound + levels[0].bound));
+    }
+    CHECK(levels[4].energy > levels[0].energy + 1e-3);
+}
+
+TEST_CASE("a twisted chain with large sectors is refused with the reason, not answered wrongly") {
     const Problem problem = family_problem("xx", {1.0}, ring(14, 0.4));
-    const Answer found = answer(sector_route(), problem, query(QuantityId::ground_energy));
-    REQUIRE(std::holds_alternative<Undecided>(found));
-    CHECK(std::get<Undecided>(found).reason.find("complex") != std::string::npos);
+    const Coverage coverage = sector_route().plan({{problem}, {query(QuantityId::ground_energy)}});
+    CHECK(coverage.refusal[0].find("complex") != std::string::npos);
+}
+
+TEST_CASE("levels that cancel to zero keep an honest bound") {
+    // XX rings at h = 0: hops with k = pi/2 cancel, the blocks are rounding noise. The exact levels
+    // of L = 4 are 0, +-1, +-sqrt2 with 8 zeros (free fermions; Lieb, Schultz, Mattis 1961).
+    for (const Problem& problem : {family_problem("xx", {1.0}, ring(4)),
+                                   family_problem("xx", {1.0}, ring(6)),
+                                   family_problem("xx", {1.0}, ring(8)),
+                                   family_problem("xx", {1.0}, ring(6, pi)),
+                                   family_problem("xx", {1.0}, ring(8, 0.4))}) {
+        const Reference a = ask(sector_route(), problem, QuantityId::spectrum);
+        const Reference b = ask(dense_route(), problem, QuantityId::spectrum);
+        for (std::size_t i = 0; i < a.value.data.size(); ++i) {
+            CHECK_NEAR(a.value.real_at(i), b.value.real_at(i), bound(a.bound[i] + b.bound[i]));
+            CHECK((a.bound[i] >= 1e-16 || a.value.real_at(i) == 0.0));
+        }
+    }
+    const Reference four =
+        ask(sector_route(), family_problem("xx", {1.0}, ring(4)), QuantityId::spectrum);
+    for (std::size_t i = 0; i < 16; ++i) {
+        const double x = std::abs(four.value.real_at(i));
+        const double exact = x < 0.5 ? 0.0 : x < 1.2 ? 1.0 : std::sqrt(2.0);
+        CHECK_NEAR(x, exact, bound(four.bound[i]));
+    }
 }
