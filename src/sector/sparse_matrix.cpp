@@ -83,8 +83,11 @@ SparseMatrix<Scalar> build_matrix(const SectorBasis& basis,
 
 template <class Scalar>
 void SparseMatrix<Scalar>::apply(const Scalar* x, Scalar* y, int threads) const {
+    // Below this many elements waking the second thread costs more than its help.
+    constexpr std::size_t worth_threads = 200000;
     const std::int64_t rows = dim();
-#pragma omp parallel for num_threads(threads) schedule(static)
+    const int used = value.size() < worth_threads ? 1 : threads;
+#pragma omp parallel for num_threads(used) schedule(static)
     for (std::int64_t row = 0; row < rows; ++row) {
         Scalar sum(0);
         for (std::int64_t i = row_start[static_cast<std::size_t>(row)];
