@@ -45,7 +45,7 @@ private:
 /// Bytes the system says are free for new processes (Linux MemAvailable); 4 GiB where unknown.
 double available_memory();
 
-/// Hears about finished work. The unit of `work` is estimated seconds. Thread safe.
+/// Hears what is being worked on. The unit of `work` is estimated seconds. Thread safe.
 class Progress {
 public:
     Progress() = default;
@@ -53,7 +53,8 @@ public:
     Progress& operator=(const Progress&) = delete;
     virtual ~Progress() = default;
     virtual void begin(double total_work) = 0;
-    virtual void advance(double work, const std::string& what) = 0;
+    virtual void started(const std::string& what) = 0;
+    virtual void finished(double work) = 0;
     virtual void end() = 0;
 };
 

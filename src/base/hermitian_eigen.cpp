@@ -131,23 +131,40 @@ HermitianEigen<std::complex<double>> hermitian_eigen(Eigen::MatrixXcd matrix) {
     return result;
 }
 
-Eigen::VectorXd cluster_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& residuals) {
-    const Eigen::Index n = values.size();
-    Eigen::VectorXd bounds(n);
+namespace {
+
+/// Calls each(first, count) for every maximal run of overlapping intervals value +- bound.
+template <class Each>
+void for_each_cluster(const Eigen::VectorXd& values, const Eigen::VectorXd& bounds, Each&& each) {
     Eigen::Index first = 0;
-    while (first < n) {
-        double reach = values[first] + residuals[first];
-        double squares = residuals[first] * residuals[first];
+    while (first < values.size()) {
+        double reach = values[first] + bounds[first];
         Eigen::Index last = first + 1;
-        while (last < n && values[last] - residuals[last] <= reach) {
-            reach = std::max(reach, values[last] + residuals[last]);
-            squares += residuals[last] * residuals[last];
+        while (last < values.size() && values[last] - bounds[last] <= reach) {
+            reach = std::max(reach, values[last] + bounds[last]);
             ++last;
         }
-        bounds.segment(first, last - first).setConstant(std::sqrt(squares));
+        each(first, last - first);
         first = last;
     }
-    return bounds;
+}
+
+}  // namespace
+
+Eigen::VectorXd cluster_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& residuals) {
+    Eigen::VectorXd joined(values.size());
+    for_each_cluster(values, residuals, [&](Eigen::Index first, Eigen::Index count) {
+        joined.segment(first, count).setConstant(residuals.segment(first, count).norm());
+    });
+    return joined;
+}
+
+Eigen::VectorXd rank_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& bounds) {
+    Eigen::VectorXd joined(values.size());
+    for_each_cluster(values, bounds, [&](Eigen::Index first, Eigen::Index count) {
+        joined.segment(first, count).setConstant(bounds.segment(first, count).maxCoeff());
+    });
+    return joined;
 }
 
 }  // namespace chainmark

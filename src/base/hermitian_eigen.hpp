@@ -26,4 +26,9 @@ HermitianEigen<std::complex<double>> hermitian_eigen(Eigen::MatrixXcd matrix);
 /// memory). `values` ascending; same order in the result.
 Eigen::VectorXd cluster_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& residuals);
 
+/// Error bounds of the ranks of a list that was merged from several, each value with a bound of its
+/// own: values whose intervals overlap may stand in each other's place, so each takes the largest
+/// bound of its cluster. `values` ascending; same order in the result.
+Eigen::VectorXd rank_bounds(const Eigen::VectorXd& values, const Eigen::VectorXd& bounds);
+
 }  // namespace chainmark

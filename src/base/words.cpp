@@ -30,6 +30,29 @@ int edit_distance(std::string_view a, std::string_view b) {
     return at(a.size(), b.size());
 }
 
+/// ASCII letters only: the words of the program have no others.
+bool equal_but_for_case(std::string_view a, std::string_view b) {
+    const auto lower = [](char c) {
+        return c >= 'A' && c <= 'Z' ? static_cast<char>(c - 'A' + 'a') : c;
+    };
+    return std::equal(a.begin(), a.end(), b.begin(), b.end(), [&](char x, char y) {
+        return lower(x) == lower(y);
+    });
+}
+
+int distance(std::string_view word, std::string_view candidate) {
+    if (equal_but_for_case(word, candidate)) {
+        return 0;
+    }
+    const bool begun = word.size() >= 3 && candidate.starts_with(word);
+    return begun ? 1 : edit_distance(word, candidate);
+}
+
+/// The distance up to which a word may be a slip for another.
+int farthest(std::string_view word) {
+    return word.size() < 2 ? 0 : std::max(1, static_cast<int>(word.size()) / 3);
+}
+
 }  // namespace
 
 std::string nearest_word(std::string_view word, std::span<const std::string> allowed) {
@@ -38,17 +61,19 @@ std::string nearest_word(std::string_view word, std::span<const std::string> all
         return {};
     }
     std::string best;
-    int best_distance = std::max(1, static_cast<int>(word.size()) / 3) + 1;
+    int limit = farthest(word) + 1;
     for (const std::string& candidate : allowed) {
-        const bool extended = word.size() >= 3 && candidate.size() > word.size() &&
-                              std::string_view(candidate).substr(0, word.size()) == word;
-        const int distance = extended ? 1 : edit_distance(word, candidate);
-        if (distance < best_distance) {
-            best_distance = distance;
+        const int found = distance(word, candidate);
+        if (found < limit) {
+            limit = found;
             best = candidate;
         }
     }
     return best;
+}
+
+std::string counted(std::size_t count, std::string_view noun) {
+    return fmt::format("{} {}{}", count, noun, count == 1 ? "" : "s");
 }
 
 std::string join(const std::vector<std::string>& words, std::string_view separator) {

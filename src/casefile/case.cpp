@@ -21,17 +21,7 @@ std::string name_of(const std::string& source) {
 }
 
 void read_sections(Reader& reader, const Table& root, Draft& draft) {
-    reader.only_keys(root,
-                     "the case",
-                     {"format",
-                      "title",
-                      "system",
-                      "parameters",
-                      "hamiltonian",
-                      "grid",
-                      "quantity",
-                      "tolerance",
-                      "routes"});
+    reader.only_keys(root, "the case", top_level_keys());
     read_title(reader, root, draft);
     read_system(reader, root, draft);
     read_hamiltonian(reader, root, draft);

@@ -4,6 +4,7 @@
 
 #include <fmt/format.h>
 
+#include "chainmark/base/words.hpp"
 #include "chainmark/casefile/sections.hpp"
 
 namespace chainmark {
@@ -33,8 +34,8 @@ void check_ring(Reader& reader, const Draft& draft, const GridValue& sites) {
     if (sites.value < shortest) {
         reader.report(ErrorCode::bad_chain,
                       sites.at,
-                      fmt::format("a ring of {} sites", sites.value),
-                      "a ring needs at least 3 sites: write two sites as a chain with boundary = "
+                      "a ring of " + counted(static_cast<std::size_t>(sites.value), "site"),
+                      "a ring needs at least 3 sites: write one or two as a chain with boundary = "
                       "\"open\"");
     } else if (result.family != nullptr && result.coincident == Coincident::refuse &&
                sites.value < result.family->smallest_ring) {
@@ -58,7 +59,7 @@ void check_repeats(Reader& reader, const WrittenAxis& axis) {
                 ErrorCode::bad_value,
                 value.at,
                 fmt::format("'{}' has the value {} twice", axis.name, value_text(value.value)),
-                "every value once");
+                "write every value once");
         }
     }
 }
@@ -88,7 +89,7 @@ void check_zipped_repeats(Reader& reader, const Draft& draft) {
                 ErrorCode::bad_value,
                 longest->values[i].at,
                 fmt::format("the point of number {} in the zipped lists occurs twice", i + 1),
-                "every point once");
+                "write every point once");
         }
     }
 }
@@ -112,15 +113,13 @@ void check_list(Reader& reader,
         const Chain chain = {static_cast<int>(value.value), draft.result.boundary};
         const int count = placement_count(placed, chain, 1);
         if (numbers->size() != static_cast<std::size_t>(count)) {
-            reader.report(
-                ErrorCode::bad_value,
-                at,
-                fmt::format("'coupling' lists {} numbers, but the term has {} placements on "
-                            "the {}",
-                            numbers->size(),
-                            count,
-                            to_string(chain)),
-                "give one number for all placements, or one per placement");
+            reader.report(ErrorCode::bad_value,
+                          at,
+                          fmt::format("'coupling' lists {}, but the term has {} on the {}",
+                                      counted(numbers->size(), "number"),
+                                      counted(static_cast<std::size_t>(count), "placement"),
+                                      to_string(chain)),
+                          "give one number for all placements, or one per placement");
             return;
         }
     }
@@ -200,22 +199,22 @@ void check_extent(Reader& reader, const Query& query, const Position& at, int sh
     for (const auto& [i, j] : query.options.pairs) {
         farthest = std::max({farthest, i, j});
     }
+    const std::string length = counted(static_cast<std::size_t>(shortest), "site");
     if (farthest >= shortest) {
         reader.report(
             ErrorCode::bad_value,
             at,
-            fmt::format(
-                "'{}' reaches to {} in a chain of {} sites", query.label, farthest, shortest),
+            fmt::format("'{}' reaches to {} in a chain of {}", query.label, farthest, length),
             fmt::format("sites and distances go from 0 to {}", shortest - 1));
     }
     constexpr int most_bits = 30;
     if (shortest < most_bits && query.options.count > (1 << shortest)) {
         reader.report(ErrorCode::bad_value,
                       at,
-                      fmt::format("'{}' asks for {} levels, but a chain of {} sites has {}",
+                      fmt::format("'{}' asks for {} levels, but a chain of {} has {}",
                                   query.label,
                                   query.options.count,
-                                  shortest,
+                                  length,
                                   1 << shortest),
                       "take fewer levels or a longer chain");
     }

@@ -201,7 +201,9 @@ std::optional<Error> apply(toml::table& root, const Setting& setting, const std:
     }
     toml::table* parent = parent_table(root, *path, number);
     if (parent == nullptr) {
-        return bad_setting(setting, fmt::format("'{}' is no table in the file", path->front()), "");
+        return bad_setting(setting,
+                           fmt::format("'{}' is no table in the file", path->front()),
+                           fmt::format("expected a table [{}]", path->front()));
     }
     // An existing key keeps its place, and with it an axis its rank; the moved value brings its
     // own.
@@ -225,7 +227,7 @@ Error too_long(const std::string& source) {
     return {ErrorCode::cannot_read,
             {source, 0, 0},
             "the file is too long for a case",
-            fmt::format("at most {} MiB", longest_file / (1024 * 1024))};
+            fmt::format("a case has at most {} MiB", longest_file / (std::size_t{1024} * 1024))};
 }
 
 Result<Document> read_document(const std::string& text,

@@ -75,7 +75,7 @@ Result<Document> read_document(const std::string& text,
 std::string effective_text(const Node& root);
 
 /// Longest case file in bytes.
-inline constexpr std::size_t longest_file = 10 * 1024 * 1024;
+inline constexpr std::size_t longest_file = std::size_t{10} * 1024 * 1024;
 
 /// The error for files beyond `longest_file`.
 Error too_long(const std::string& source);

@@ -37,8 +37,9 @@ std::optional<double> read_element(Reader& reader,
                                    GridKind kind) {
     const auto* text = std::get_if<std::string>(&node.value);
     if (kind == GridKind::sites && text != nullptr) {
-        return reader.choice(node, what, {"infinite"}) ? std::optional(infinite_sites)
-                                                       : std::nullopt;
+        return reader.choice(node, what, {"infinite"}, "a whole number")
+                   ? std::optional(infinite_sites)
+                   : std::nullopt;
     }
     return read_number(reader, node, what, kind);
 }

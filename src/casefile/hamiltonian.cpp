@@ -3,7 +3,6 @@
 
 #include <fmt/format.h>
 
-#include "chainmark/base/words.hpp"
 #include "chainmark/casefile/sections.hpp"
 
 namespace chainmark {
@@ -52,7 +51,7 @@ void read_parameters(Reader& reader, const Table& root, Draft& draft) {
         reader.report(ErrorCode::grid_too_large,
                       find(root, "parameters")->at,
                       fmt::format("[parameters] has {} names", table->size()),
-                      fmt::format("at most {}", most_parameters));
+                      fmt::format("take at most {}", most_parameters));
         draft.terms_complete = false;
         return;
     }
@@ -82,22 +81,20 @@ void refuse_without_family(Reader& reader, const Table& table) {
         if (holds({"family", "term"}, entry.key)) {
             continue;
         }
-        const std::string found = fmt::format("{} has no key '{}'", owner, shown(entry.key));
-        if (entry.key == "h") {
-            reader.report(ErrorCode::unknown_key,
-                          entry.at,
-                          found + " without a family",
-                          "write the field as a [[hamiltonian.term]] with operators = [\"Sz\"]");
+        const bool of_families =
+            std::any_of(families().begin(), families().end(), [&](const Family& family) {
+                return holds(parameter_names(family), entry.key);
+            });
+        if (entry.key != "h" && !of_families) {
+            reader.unknown_key(entry, owner, {"family", "h", "term"});
             continue;
         }
-        const bool known = std::any_of(families().begin(), families().end(), [&](const Family& f) {
-            return holds(parameter_names(f), entry.key);
-        });
         reader.report(ErrorCode::unknown_key,
                       entry.at,
-                      known ? found + " without a family" : found,
-                      known ? "name the family, or write [[hamiltonian.term]]"
-                            : suggestion(entry.key, {"family", "h", "term"}));
+                      fmt::format("{} has no key '{}' without a family", owner, entry.key),
+                      of_families
+                          ? "name the family, or write [[hamiltonian.term]]"
+                          : "write the field as a [[hamiltonian.term]] with operators = [\"Sz\"]");
     }
 }
 
@@ -145,14 +142,15 @@ void refuse_unused(Reader& reader, const Table& root, const Draft& draft) {
     if (table == nullptr || !draft.terms_complete) {
         return;
     }
-    const std::vector<std::string> used(draft.used_parameters.begin(), draft.used_parameters.end());
     for (const Entry& entry : *table) {
         if (draft.used_parameters.count(entry.key) == 0) {
-            reader.report(ErrorCode::bad_value,
-                          entry.at,
-                          fmt::format("the parameter '{}' is used by no term", shown(entry.key)),
-                          used.empty() ? "no term has coupling = { parameter = ... }"
-                                       : "the terms use " + join(used));
+            reader.report(
+                ErrorCode::bad_value,
+                entry.at,
+                fmt::format("the parameter '{}' is used by no term", shown(entry.key)),
+                fmt::format("remove it, or use it in a [[hamiltonian.term]] as coupling = "
+                            "{{ parameter = \"{}\" }}",
+                            shown(entry.key)));
         }
     }
 }

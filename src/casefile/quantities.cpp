@@ -48,10 +48,11 @@ void read_pairs(Reader& reader, const Node& node, Options& options) {
             continue;
         }
         if (pair->size() != 2) {
-            reader.report(ErrorCode::bad_value,
-                          item.at,
-                          fmt::format("an element of {} holds {} sites", what, pair->size()),
-                          "expected two sites [i, j]");
+            reader.report(
+                ErrorCode::bad_value,
+                item.at,
+                fmt::format("an element of {} holds {}", what, counted(pair->size(), "site")),
+                "expected two sites [i, j]");
             continue;
         }
         const auto first = read_place(reader, pair->front(), "a site of " + what);
@@ -108,7 +109,7 @@ void require_options(Reader& reader,
                      const QuantitySpec& spec) {
     const std::string name = fmt::format("the quantity '{}'", spec.name);
     if (takes(spec, OptionId::count)) {
-        reader.need(table, at, name, "count", "how many, such as count = 4");
+        reader.need(table, at, name, "count", "say how many, such as count = 4");
     }
     if (!takes(spec, OptionId::distance)) {
         return;
@@ -133,8 +134,8 @@ const QuantitySpec* read_name(Reader& reader, const Table& table, const Position
     for (const QuantitySpec& spec : quantities()) {
         names.push_back(spec.name);
     }
-    const Entry* name =
-        reader.need(table, at, owner, "name", "what is wanted, such as name = \"ground_energy\"");
+    const Entry* name = reader.need(
+        table, at, owner, "name", "say what is wanted, such as name = \"ground_energy\"");
     if (name == nullptr) {
         return nullptr;
     }

@@ -12,6 +12,10 @@ namespace {
 
 constexpr std::size_t most_errors = 1000;
 
+bool holds(const std::vector<std::string>& words, const std::string& word) {
+    return std::find(words.begin(), words.end(), word) != words.end();
+}
+
 }  // namespace
 
 Reader::Reader(std::string source, const std::vector<Setting>& settings)
@@ -116,7 +120,8 @@ std::optional<bool> Reader::flag(const Node& node, const std::string& what) {
 
 std::optional<std::size_t> Reader::choice(const Node& node,
                                           const std::string& what,
-                                          const std::vector<std::string>& words) {
+                                          const std::vector<std::string>& words,
+                                          const std::string& other_form) {
     const std::string* word = text(node, what, "one of the texts " + join(words));
     if (word == nullptr) {
         return std::nullopt;
@@ -126,7 +131,7 @@ std::optional<std::size_t> Reader::choice(const Node& node,
         report(ErrorCode::unknown_name,
                node.at,
                fmt::format("{} is {}", what, describe(node)),
-               suggestion(*word, words));
+               suggestion(*word, words) + (other_form.empty() ? "" : ", or " + other_form));
         return std::nullopt;
     }
     return static_cast<std::size_t>(at - words.begin());
@@ -173,19 +178,44 @@ const Entry* Reader::need(const Table& table,
     return entry;
 }
 
+void Reader::unknown_key(const Entry& entry,
+                         const std::string& owner,
+                         const std::vector<std::string>& allowed) {
+    std::string right;
+    if (entry.at.setting < 0 && holds(top_level_keys(), entry.key)) {
+        right = fmt::format(
+            "'{}' is a key of the top level, and those stand above the first [table]", entry.key);
+    } else if (errors_.size() < most_errors) {
+        // A file of a million keys is refused without looking for what each may have meant.
+        right = suggestion(entry.key, allowed);
+    }
+    report(ErrorCode::unknown_key,
+           entry.at,
+           fmt::format("{} has no key '{}'", owner, shown(entry.key)),
+           std::move(right));
+}
+
 void Reader::only_keys(const Table& table,
                        const std::string& owner,
                        const std::vector<std::string>& allowed) {
     for (const Entry& entry : table) {
-        // A file of a million keys is refused without looking for what each may have meant.
-        const bool is_shown = errors_.size() < most_errors;
-        if (std::find(allowed.begin(), allowed.end(), entry.key) == allowed.end()) {
-            report(ErrorCode::unknown_key,
-                   entry.at,
-                   fmt::format("{} has no key '{}'", owner, shown(entry.key)),
-                   is_shown ? suggestion(entry.key, allowed) : "");
+        if (!holds(allowed, entry.key)) {
+            unknown_key(entry, owner, allowed);
         }
     }
+}
+
+const std::vector<std::string>& top_level_keys() {
+    static const std::vector<std::string> keys = {"format",
+                                                  "title",
+                                                  "system",
+                                                  "parameters",
+                                                  "hamiltonian",
+                                                  "grid",
+                                                  "quantity",
+                                                  "tolerance",
+                                                  "routes"};
+    return keys;
 }
 
 std::string name_in(const std::string& key, const std::string& owner) {

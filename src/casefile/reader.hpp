@@ -38,10 +38,11 @@ public:
                                       std::int64_t highest);
     std::optional<bool> flag(const Node& node, const std::string& what);
 
-    /// One of `words`; returns its index.
+    /// One of `words`; returns its index. `other_form` is what the caller takes besides texts.
     std::optional<std::size_t> choice(const Node& node,
                                       const std::string& what,
-                                      const std::vector<std::string>& words);
+                                      const std::vector<std::string>& words,
+                                      const std::string& other_form = "");
 
     const std::string* text(const Node& node, const std::string& what, const std::string& expected);
     const List* list(const Node& node, const std::string& what, const std::string& expected);
@@ -55,6 +56,12 @@ public:
                       const std::string& key,
                       const std::string& expected);
 
+    /// Reports a key that `owner` does not have; `allowed` are those it has. What belongs to the
+    /// top level was written below a [table] by mistake.
+    void unknown_key(const Entry& entry,
+                     const std::string& owner,
+                     const std::vector<std::string>& allowed);
+
     /// Reports every key that is not in `allowed`.
     void only_keys(const Table& table,
                    const std::string& owner,
@@ -66,6 +73,9 @@ private:
     std::vector<std::pair<Position, Error>> errors_;
     std::size_t count_ = 0;
 };
+
+/// The keys of a case: "format", "title" and the names of the tables.
+const std::vector<std::string>& top_level_keys();
 
 /// "'J' in [hamiltonian]"
 std::string name_in(const std::string& key, const std::string& owner);

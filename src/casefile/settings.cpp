@@ -28,16 +28,17 @@ Words hamiltonian_names() {
     return names;
 }
 
-/// The tables a bare name is looked for in, in this order.
+/// The tables a bare name is looked for in, in this order: a name that the case gives comes first.
 struct Section {
     std::string name;
     Words keys;
 };
 
 std::vector<Section> bare_names(const Words& parameters) {
-    return {{"system", {"sites", "boundary"}},
-            {"parameters", parameters},
+    return {{"parameters", parameters},
+            {"system", {"sites", "boundary", "coincident", "spin"}},
             {"hamiltonian", hamiltonian_names()},
+            {"grid", {"combine"}},
             {"tolerance", {"absolute", "relative"}},
             {"routes", {"use"}}};
 }
@@ -55,11 +56,12 @@ Result<KeyPath> setting_path(const std::string& key, const Words& parameters) {
             "system", "parameters", "hamiltonian", "grid", "tolerance", "routes"};
         const std::string section = key.substr(0, dot);
         const std::string name = key.substr(dot + 1);
+        if (name.empty() || name.find('.') != std::string::npos) {
+            return tl::unexpected(unknown_setting(
+                key, "a path has two parts, SECTION.NAME, such as system.boundary"));
+        }
         if (!holds(sections, section)) {
             return tl::unexpected(unknown_setting(key, suggestion(section, sections)));
-        }
-        if (name.empty() || name.find('.') != std::string::npos) {
-            return tl::unexpected(unknown_setting(key, "a dotted key is SECTION.NAME"));
         }
         return KeyPath{section, name};
     }

@@ -10,24 +10,24 @@ namespace {
 
 constexpr std::int64_t format_read = 1;
 
-const std::string boundary_forms =
-    "\"periodic\", \"open\", \"antiperiodic\" or { twist = radians }";
+const std::string twist_form = "{ twist = radians }";
 
 void read_boundary(Reader& reader, const Node& node, Draft& draft) {
     const std::string what = name_in("boundary", "[system]");
     Case& result = draft.result;
     if (const auto* table = std::get_if<Table>(&node.value)) {
         reader.only_keys(*table, what, {"twist"});
-        if (const Entry* twist = reader.need(*table, node.at, what, "twist", "radians")) {
+        if (const Entry* twist =
+                reader.need(*table, node.at, what, "twist", "expected " + twist_form)) {
             result.twist = reader.number(twist->value, "'twist' of " + what).value_or(0.0);
         }
         return;
     }
     if (!std::holds_alternative<std::string>(node.value)) {
-        reader.wrong_type(node, what, boundary_forms);
+        reader.wrong_type(node, what, R"("periodic", "open", "antiperiodic" or )" + twist_form);
         return;
     }
-    const auto chosen = reader.choice(node, what, {"periodic", "open", "antiperiodic"});
+    const auto chosen = reader.choice(node, what, {"periodic", "open", "antiperiodic"}, twist_form);
     if (chosen) {
         result.boundary = *chosen == 1 ? BoundaryKind::open : BoundaryKind::ring;
         result.twist = *chosen == 2 ? pi : 0.0;
@@ -104,8 +104,11 @@ void read_system(Reader& reader, const Table& root, Draft& draft) {
         return;
     }
     reader.only_keys(*table, "[system]", {"sites", "boundary", "spin", "coincident"});
-    if (const Entry* sites = reader.need(
-            *table, system->at, "[system]", "sites", "the number of sites, such as sites = 12")) {
+    if (const Entry* sites = reader.need(*table,
+                                         system->at,
+                                         "[system]",
+                                         "sites",
+                                         "give the number of sites, such as sites = 12")) {
         read_axis(reader, *sites, "[system]", GridKind::sites, draft);
     }
     if (const Entry* boundary = find(*table, "boundary")) {

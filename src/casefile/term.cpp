@@ -142,11 +142,10 @@ bool same_length(Reader& reader, const Position& at, const CaseTerm& term) {
     }
     reader.report(ErrorCode::bad_value,
                   at,
-                  fmt::format("{} has {} operators and {} {}",
+                  fmt::format("{} has {} and {}",
                               owner,
-                              term.factors.size(),
-                              term.offsets.size(),
-                              term.fixed ? "sites" : "offsets"),
+                              counted(term.factors.size(), "operator"),
+                              counted(term.offsets.size(), term.fixed ? "site" : "offset")),
                   "expected as many of one as of the other");
     return false;
 }
@@ -255,7 +254,7 @@ std::optional<Coupling> read_uniform(
     if (list != nullptr && list->size() != 2) {
         reader.report(ErrorCode::bad_value,
                       node.at,
-                      fmt::format("{} holds {} numbers", bounds, list->size()),
+                      fmt::format("{} holds {}", bounds, counted(list->size(), "number")),
                       "expected two numbers [low, high]");
         complete = false;
     } else if (list != nullptr) {

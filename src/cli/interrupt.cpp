@@ -2,8 +2,10 @@
 
 #include <array>
 #include <cerrno>
+#include <chrono>
 #include <csignal>
 #include <cstdlib>
+#include <thread>
 
 #include <semaphore.h>
 
@@ -37,6 +39,14 @@ void wait_for_signal() {
     }
 }
 
+/// Forgets signals that came together with the first: timeout(1) and batch systems signal the
+/// process and then its whole group, which is one request and not two.
+void forget_echoes() {
+    std::this_thread::sleep_for(std::chrono::milliseconds(500));
+    while (sem_trywait(&arrived) == 0) {
+    }
+}
+
 }  // namespace
 
 InterruptWatch::InterruptWatch() {
@@ -46,6 +56,7 @@ InterruptWatch::InterruptWatch() {
         wait_for_signal();
         if (!done.stop_requested()) {
             source_.request_stop();
+            forget_echoes();
             wait_for_signal();
         }
         if (!done.stop_requested()) {

@@ -36,10 +36,14 @@ void ProgressLine::begin(double total_work) {
     });
 }
 
-void ProgressLine::advance(double work, const std::string& what) {
+void ProgressLine::started(const std::string& what) {
+    const std::lock_guard lock(mutex_);
+    what_ = what;
+}
+
+void ProgressLine::finished(double work) {
     const std::lock_guard lock(mutex_);
     done_ += work;
-    what_ = what;
     advanced_ = Clock::now();
 }
 
@@ -54,21 +58,22 @@ void ProgressLine::end() {
     }
 }
 
-/// The rate so far times the work that is left, less the time since the last news; before any
-/// news the estimate of the work itself.
+/// Once a tenth is done, the rate so far times the work that is left; before that the plan's own
+/// estimate. Work that takes longer than that says for how long it has been going.
 void ProgressLine::draw() {
+    constexpr double enough = 0.1;
     const std::lock_guard lock(mutex_);
     const Clock::time_point now = Clock::now();
     if (!active_ || now - started_ < silent_start) {
         return;
     }
     const double part = total_ > 0.0 ? std::min(done_ / total_, 1.0) : 0.0;
-    const double whole = part > 0.0 ? seconds(advanced_ - started_) / part : total_;
+    const double whole = part > enough ? seconds(advanced_ - started_) / part : total_;
     const double left = whole - seconds(now - started_);
     std::string line = fmt::format("chainmark: {:.0f} %", 100.0 * part);
-    if (left > 0.0) {  // overdue work says nothing about its end
-        line += fmt::format("  about {} left", duration_text(left));
-    }
+    line += left > 0.0 ? fmt::format("  about {} left", duration_text(left))
+                       : fmt::format("  longer than estimated, {} so far",
+                                     duration_text(seconds(now - started_)));
     if (!what_.empty()) {
         line += fmt::format("  ({})", what_);
     }

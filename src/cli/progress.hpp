@@ -16,7 +16,8 @@ class ProgressLine : public Progress {
 public:
     ~ProgressLine() override { end(); }
     void begin(double total_work) override;
-    void advance(double work, const std::string& what) override;
+    void started(const std::string& what) override;
+    void finished(double work) override;
     void end() override;
 
 private:

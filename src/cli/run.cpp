@@ -1,5 +1,6 @@
 #include "chainmark/cli/run.hpp"
 
+#include <charconv>
 #include <cmath>
 #include <cstdlib>
 #include <filesystem>
@@ -7,6 +8,7 @@
 
 #include <fmt/chrono.h>
 
+#include "chainmark/cli/arguments.hpp"
 #include "chainmark/cli/exit_codes.hpp"
 #include "chainmark/cli/interrupt.hpp"
 #include "chainmark/cli/output.hpp"
@@ -62,16 +64,36 @@ void check_outputs(const RunOptions& options, Errors& errors) {
     }
 }
 
-void check_limits(const RunOptions& options, Errors& errors) {
-    if (options.threads && (*options.threads < 1 || *options.threads > most_threads)) {
-        errors.push_back(bad_option("--threads",
-                                    fmt::format("{} threads", *options.threads),
-                                    fmt::format("a number from 1 to {}", most_threads)));
+/// The number that is the whole of `text`.
+template <class Number>
+std::optional<Number> number_of(const std::string& text) {
+    Number number = 0;
+    const char* end = text.data() + text.size();
+    const std::from_chars_result parsed = std::from_chars(text.data(), end, number);
+    return parsed.ec == std::errc() && parsed.ptr == end ? std::optional(number) : std::nullopt;
+}
+
+CLI::ValidationError bad_number(const std::string& option,
+                                const std::string& text,
+                                const std::string& allowed) {
+    return CLI::ValidationError(option, fmt::format("'{}' is not {}", text, allowed));
+}
+
+int threads_of(const std::string& text) {
+    const auto threads = number_of<int>(text);
+    if (!threads || *threads < 1 || *threads > most_threads) {
+        throw bad_number(
+            "--threads", text, fmt::format("a whole number from 1 to {}", most_threads));
     }
-    if (options.memory_gib && !(std::isfinite(*options.memory_gib) && *options.memory_gib > 0)) {
-        errors.push_back(bad_option(
-            "--memory", fmt::format("{} GiB", *options.memory_gib), "a number of GiB above 0"));
+    return *threads;
+}
+
+double gib_of(const std::string& text) {
+    const auto memory = number_of<double>(text);
+    if (!memory || !std::isfinite(*memory) || *memory <= 0.0) {
+        throw bad_number("--memory", text, "a number of GiB above 0");
     }
+    return *memory;
 }
 
 /// An output must not replace a case that was read.
@@ -93,7 +115,6 @@ void check_overwriting(const RunOptions& options, const std::vector<Case>& cases
 Checked<std::vector<Case>> prepared_cases(const RunOptions& options) {
     Errors errors;
     check_outputs(options, errors);
-    check_limits(options, errors);
     const Checked<std::vector<Setting>> settings = parse_settings(options.set);
     append_errors(errors, settings);
     Checked<std::vector<Case>> cases =
@@ -174,23 +195,27 @@ bool write_reports(const RunReport& report, const RunOptions& options) {
 CLI::App* add_run(CLI::App& app, RunOptions& options) {
     CLI::App* command =
         app.add_subcommand("run", "Compute every case by every route and compare the routes");
-    command->add_option("CASE", options.cases, "a file, a folder, or the name of an embedded case")
-        ->required();
-    command->add_option("--json", options.json, "write everything as JSON (-: to stdout)")
-        ->type_name("FILE|-");
-    command->add_option("--csv", options.csv, "write a long table (-: to stdout)")
-        ->type_name("FILE|-");
+    command->add_option("CASE", options.cases, case_forms)->required();
+    takes_value(
+        command->add_option("--json", options.json, "write everything as JSON (-: to stdout)"),
+        "FILE|-");
+    takes_value(command->add_option("--csv", options.csv, "write a long table (-: to stdout)"),
+                "FILE|-");
+    add_set_option(*command, options.set);
+    takes_value(
+        command->add_option("--only", options.only, "only quantities that match case/label"),
+        "GLOB");
     command
-        ->add_option(
-            "--set", options.set, "replace a value of the cases, e.g. sites=12 (repeatable)")
-        ->type_name("KEY=VALUE")
-        ->allow_extra_args(false);
-    command->add_option("--only", options.only, "only quantities that match case/label")
-        ->type_name("GLOB");
-    command->add_option("--threads", options.threads, "how many threads (default: all)")
+        ->add_option_function<std::string>(
+            "--threads",
+            [&options](const std::string& text) { options.threads = threads_of(text); },
+            "how many threads (default: all)")
         ->type_name("N");
     command
-        ->add_option("--memory", options.memory_gib, "limit for big arrays (default: 80 % of free)")
+        ->add_option_function<std::string>(
+            "--memory",
+            [&options](const std::string& text) { options.memory_gib = gib_of(text); },
+            "limit for big arrays (default: 80 % of free)")
         ->type_name("GiB");
     command->add_flag("--quiet", options.quiet, "only what differs or is undecided, and one line");
     command->add_flag("--no-color", options.no_color, "no colours (as with NO_COLOR set)");

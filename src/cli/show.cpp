@@ -6,6 +6,7 @@
 
 #include "chainmark/base/words.hpp"
 #include "chainmark/casefile/case.hpp"
+#include "chainmark/cli/arguments.hpp"
 #include "chainmark/cli/embedded.hpp"
 #include "chainmark/cli/example.hpp"
 #include "chainmark/cli/exit_codes.hpp"
@@ -121,36 +122,61 @@ std::string cases_text() {
     return table.text(0);
 }
 
+struct Argument {
+    const char* name;
+    const char* forms;
+};
+
+constexpr Argument case_argument = {"CASE", case_forms};
+constexpr Argument family_argument = {"FAMILY", "a family of 'chainmark show families'"};
+
 /// A topic is a list that the program knows, or something said about an argument.
 struct Topic {
     const char* name;
     const char* sentence;
-    const char* argument;  ///< nullptr for a list
-    std::string (*text)();
-    Json (*json)();
-    Checked<std::string> (*about)(const std::string& argument);
+    std::string (*text)() = nullptr;
+    Json (*json)() = nullptr;
+    const Argument* argument = nullptr;  ///< nullptr for a list
+    Checked<std::string> (*about)(const ShowOptions&) = nullptr;
 };
 
+Checked<std::string> about_symmetries(const ShowOptions& options) {
+    return symmetries_of_case(options.argument, options.set);
+}
+
+Checked<std::string> about_plan(const ShowOptions& options) {
+    return plan_of_case(options.argument, options.set);
+}
+
+Checked<std::string> about_terms(const ShowOptions& options) {
+    return terms_of_case(options.argument, options.set);
+}
+
+Checked<std::string> about_example(const ShowOptions& options) {
+    return example_case(options.argument);
+}
+
 constexpr std::array topics = {
-    Topic{"families", "the named Hamiltonians", nullptr, families_text, families_json, nullptr},
-    Topic{
-        "quantities", "what can be asked for", nullptr, quantities_text, quantities_json, nullptr},
-    Topic{"routes", "the independent ways to a number", nullptr, routes_text, routes_json, nullptr},
-    Topic{"cases", "the embedded cases", nullptr, cases_text, cases_json, nullptr},
-    Topic{"symmetries",
-          "the symmetries found in a case",
-          "CASE",
-          nullptr,
-          nullptr,
-          symmetries_of_case},
-    Topic{"plan",
-          "which route does what in a case, and at what cost",
-          "CASE",
-          nullptr,
-          nullptr,
-          plan_of_case},
-    Topic{"terms", "the operator strings of a case", "CASE", nullptr, nullptr, terms_of_case},
-    Topic{"example", "a complete case file for a family", "FAMILY", nullptr, nullptr, example_case},
+    Topic{"families", "the named Hamiltonians", families_text, families_json},
+    Topic{"quantities", "what can be asked for", quantities_text, quantities_json},
+    Topic{"routes", "the independent ways to a number", routes_text, routes_json},
+    Topic{"cases", "the embedded cases", cases_text, cases_json},
+    Topic{.name = "symmetries",
+          .sentence = "the symmetries found in a case",
+          .argument = &case_argument,
+          .about = about_symmetries},
+    Topic{.name = "plan",
+          .sentence = "which route does what in a case, and at what cost",
+          .argument = &case_argument,
+          .about = about_plan},
+    Topic{.name = "terms",
+          .sentence = "the operator strings of a case",
+          .argument = &case_argument,
+          .about = about_terms},
+    Topic{.name = "example",
+          .sentence = "a complete case file for a family",
+          .argument = &family_argument,
+          .about = about_example},
 };
 
 int show_list(const Topic& topic, const std::string& json_path) {
@@ -160,8 +186,8 @@ int show_list(const Topic& topic, const std::string& json_path) {
     return print_output(json_path, topic.json().dump(1) + '\n');
 }
 
-int show_about(const Topic& topic, const std::string& argument) {
-    const Checked<std::string> text = topic.about(argument);
+int show_about(const Topic& topic, const ShowOptions& options) {
+    const Checked<std::string> text = topic.about(options);
     if (!text) {
         print_errors(text.error());
         return exit_wrong_input;
@@ -179,10 +205,15 @@ void add_show(CLI::App& app, ShowOptions& options) {
         CLI::App* sub = command->add_subcommand(topic.name, topic.sentence);
         sub->callback([&options, &topic] { options.topic = topic.name; });
         if (topic.argument != nullptr) {
-            sub->add_option(topic.argument, options.argument)->required();
-        } else {
-            sub->add_option("--json", options.json, "write it as JSON (-: to stdout)")
-                ->type_name("FILE|-");
+            sub->add_option(topic.argument->name, options.argument, topic.argument->forms)
+                ->required();
+        }
+        if (topic.argument == &case_argument) {
+            add_set_option(*sub, options.set);
+        }
+        if (topic.json != nullptr) {
+            takes_value(sub->add_option("--json", options.json, "write it as JSON (-: to stdout)"),
+                        "FILE|-");
         }
     }
 }
@@ -191,7 +222,7 @@ int show(const ShowOptions& options) {
     for (const Topic& topic : topics) {
         if (options.topic == topic.name) {
             return topic.argument == nullptr ? show_list(topic, options.json)
-                                             : show_about(topic, options.argument);
+                                             : show_about(topic, options);
         }
     }
     broken_invariant("a topic was parsed", __FILE__, __LINE__);

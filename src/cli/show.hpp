@@ -1,15 +1,17 @@
 #pragma once
 
 #include <string>
+#include <vector>
 
 #include <CLI/CLI.hpp>
 
 namespace chainmark::cli {
 
 struct ShowOptions {
-    std::string topic;     ///< "families", ...
-    std::string argument;  ///< the CASE or FAMILY of topics that take one
-    std::string json;      ///< a file or "-" for JSON instead of text
+    std::string topic;             ///< "families", ...
+    std::string argument;          ///< the CASE or FAMILY of topics that take one
+    std::vector<std::string> set;  ///< KEY=VALUE for topics about a CASE
+    std::string json;              ///< a file or "-" for JSON instead of text
 };
 
 /// Adds the command with a subcommand for every topic.

@@ -1,7 +1,7 @@
 #include "chainmark/cli/show_case.hpp"
 
 #include <algorithm>
-#include <set>
+#include <map>
 
 #include <fmt/format.h>
 
@@ -17,11 +17,19 @@ namespace {
 
 constexpr std::size_t most_strings = 60;
 
-/// A grid point with its problem.
+/// The first grid point of a chain size with its problem.
 struct BuiltPoint {
     Parameters parameters;
     Problem problem;
+    int points = 1;  ///< of this size
 };
+
+double sites_of(const Parameters& parameters) {
+    const auto sites = std::find_if(
+        parameters.begin(), parameters.end(), [](const auto& p) { return p.first == "sites"; });
+    CHAINMARK_EXPECTS(sites != parameters.end());
+    return sites->second;
+}
 
 /// The first point of every chain size of the grid.
 Checked<std::vector<BuiltPoint>> first_points(const Case& c) {
@@ -30,11 +38,11 @@ Checked<std::vector<BuiltPoint>> first_points(const Case& c) {
         return tl::unexpected(Errors{points.error()});
     }
     std::vector<BuiltPoint> built;
-    std::set<double> sizes;
+    std::map<double, std::size_t> of_size;
     for (const Parameters& parameters : *points) {
-        const auto sites = std::find_if(
-            parameters.begin(), parameters.end(), [](const auto& p) { return p.first == "sites"; });
-        if (sites != parameters.end() && !sizes.insert(sites->second).second) {
+        const auto [at, is_new] = of_size.emplace(sites_of(parameters), built.size());
+        if (!is_new) {
+            ++built[at->second].points;
             continue;
         }
         Result<Problem> problem = build_problem(c, parameters);
@@ -46,15 +54,17 @@ Checked<std::vector<BuiltPoint>> first_points(const Case& c) {
     return built;
 }
 
-/// ", J = 1, h = 0": everything but the number of sites.
-std::string other_parameters(const BuiltPoint& point) {
+/// ", J = 1, h = 0": everything but the number of sites, and whether there are other points.
+std::string point_text(const BuiltPoint& point) {
     std::string text;
     for (const auto& [name, value] : point.parameters) {
         if (name != "sites") {
             text += ", " + name + " = " + parameter_text(name, value);
         }
     }
-    return text;
+    return point.points == 1
+               ? text
+               : text + fmt::format(" (the first of {} points of this size)", point.points);
 }
 
 std::string terms_text(const Case& c, const BuiltPoint& point) {
@@ -62,7 +72,7 @@ std::string terms_text(const Case& c, const BuiltPoint& point) {
     const bool infinite = problem.chain.is_infinite();
     const TermList list = infinite ? with_field(*problem.terms, problem.field, problem.terms->cell)
                                    : full_terms(problem);
-    std::string text = c.name + ": " + to_string(problem.chain) + other_parameters(point) + '\n';
+    std::string text = c.name + ": " + to_string(problem.chain) + point_text(point) + '\n';
     text += fmt::format("  {} string{}{}, constant {}\n",
                         list.terms.size(),
                         list.terms.size() == 1 ? "" : "s",
@@ -86,13 +96,18 @@ std::string symmetries_text(const Case& c, const BuiltPoint& point) {
     if (point.problem.chain.is_infinite()) {
         return "";
     }
-    return c.name + other_parameters(point) + '\n' + sector::describe_symmetries(point.problem);
+    return c.name + point_text(point) + '\n' + sector::describe_symmetries(point.problem);
+}
+
+Checked<std::vector<Case>> cases_of(const std::string& argument,
+                                    const std::vector<std::string>& set) {
+    return parse_settings(set).and_then(
+        [&](const std::vector<Setting>& settings) { return load_cases({argument}, settings); });
 }
 
 /// What `say` makes of the first point of every size of every case.
-Checked<std::string> about_first_points(const std::string& argument,
+Checked<std::string> about_first_points(const Checked<std::vector<Case>>& cases,
                                         std::string (*say)(const Case&, const BuiltPoint&)) {
-    const Checked<std::vector<Case>> cases = load_cases({argument}, {});
     if (!cases) {
         return tl::unexpected(cases.error());
     }
@@ -111,18 +126,21 @@ Checked<std::string> about_first_points(const std::string& argument,
 
 }  // namespace
 
-Checked<std::string> plan_of_case(const std::string& argument) {
-    return load_cases({argument}, {}).and_then([](const std::vector<Case>& cases) {
+Checked<std::string> plan_of_case(const std::string& argument,
+                                  const std::vector<std::string>& set) {
+    return cases_of(argument, set).and_then([](const std::vector<Case>& cases) {
         return Plan::make(cases).map([](const Plan& plan) { return plan.describe(); });
     });
 }
 
-Checked<std::string> terms_of_case(const std::string& argument) {
-    return about_first_points(argument, terms_text);
+Checked<std::string> terms_of_case(const std::string& argument,
+                                   const std::vector<std::string>& set) {
+    return about_first_points(cases_of(argument, set), terms_text);
 }
 
-Checked<std::string> symmetries_of_case(const std::string& argument) {
-    return about_first_points(argument, symmetries_text);
+Checked<std::string> symmetries_of_case(const std::string& argument,
+                                        const std::vector<std::string>& set) {
+    return about_first_points(cases_of(argument, set), symmetries_text);
 }
 
 }  // namespace chainmark::cli

@@ -65,9 +65,11 @@ FullSpectrum<Scalar>::FullSpectrum(const Problem& problem, const Context& contex
     }
     const double weight = weight_of(terms);
     const double noise = static_cast<double>(terms.size() + 2) * epsilon / 2 * weight;
-    solve(hamiltonian, commutes_ ? 2 * weight + 1.0 : 0.0, noise);
+    const double lift = weight > 0 ? 2.5 * weight : 1.0;
+    solve(hamiltonian, commutes_ ? lift : 0.0, noise);
     energies_.array() += problem.terms->constant;
-    bounds_.array() += epsilon * std::abs(problem.terms->constant);
+    constant_rounding_ = epsilon * std::abs(problem.terms->constant);
+    bounds_.array() += constant_rounding_;
     poll(context);
 }
 
@@ -89,7 +91,7 @@ void FullSpectrum<Scalar>::solve(const FullMatrix<Scalar>& hamiltonian, double l
         energies_[i] = real_part(accurate_dot(column(vectors_, i), column(image, i))) / norm;
         const Scalar energy(energies_[i]);
         residuals_[i] = (image.col(i) - energy * vectors_.col(i)).norm() / std::sqrt(norm) + noise;
-        sz_[i] = std::round(2 * vectors_.col(i).cwiseAbs2().dot(total_sz_)) / 2;
+        sz_[i] = std::round(2 * vectors_.col(i).cwiseAbs2().dot(total_sz_)) / 2 + 0.0;  // no -0
     }
     std::vector<Eigen::Index> order(static_cast<std::size_t>(n));
     std::iota(order.begin(), order.end(), Eigen::Index{0});
@@ -107,12 +109,25 @@ std::vector<Level> FullSpectrum<Scalar>::levels(double field) const {
     result.reserve(static_cast<std::size_t>(energies_.size()));
     for (Eigen::Index i = 0; i < energies_.size(); ++i) {
         const double shift = commutes_ ? -field * sz_[i] : 0.0;
-        const double energy = energies_[i] + shift;
-        result.push_back({energy, bounds_[i] + epsilon * (std::abs(shift) + std::abs(energy)), i});
+        const double rounding =
+            constant_rounding_ + epsilon * (std::abs(shift) + std::abs(energies_[i]));
+        result.push_back({energies_[i] + shift, residuals_[i] + rounding, i});
     }
     std::sort(result.begin(), result.end(), [](const Level& a, const Level& b) {
         return a.energy < b.energy;
     });
+    // The field moves levels past each other: which of them form clusters is known only now.
+    const auto size = static_cast<Eigen::Index>(result.size());
+    Eigen::VectorXd energies(size);
+    Eigen::VectorXd residuals(size);
+    for (Eigen::Index i = 0; i < size; ++i) {
+        energies[i] = result[static_cast<std::size_t>(i)].energy;
+        residuals[i] = result[static_cast<std::size_t>(i)].bound;
+    }
+    const Eigen::VectorXd bounds = cluster_bounds(energies, residuals);
+    for (Eigen::Index i = 0; i < size; ++i) {
+        result[static_cast<std::size_t>(i)].bound = bounds[i];
+    }
     return result;
 }
 

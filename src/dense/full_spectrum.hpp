@@ -56,6 +56,7 @@ private:
 
     int length_;
     bool commutes_ = false;
+    double constant_rounding_ = 0.0;
     Eigen::VectorXd total_sz_;  ///< of the basis states
     Eigen::VectorXd energies_;
     Eigen::VectorXd bounds_;

@@ -15,8 +15,8 @@ struct Jump {
 };
 
 /// Tries every pair of total Sz: their energies cross at one field, and it is a jump if nothing
-/// lies lower there by more than `window`. Sz values that meet there within the window jump
-/// together. `lowest` ascending in sz; the jumps ascend too.
+/// lies lower there. Jumps whose fields lie within `window` of the next are one. `lowest` ascending
+/// in sz; the jumps ascend too.
 std::vector<Jump> find_jumps(const std::vector<SzMinimum>& lowest, double window);
 
 }  // namespace chainmark::dense

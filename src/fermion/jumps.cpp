@@ -44,26 +44,23 @@ tl::expected<Jumps, std::string> find_jumps(const Solution& solution,
         if (from % 4096 == 0) {
             poll(context);
         }
-        const Real first = slope(hull[from], hull[from + 1]);
         std::size_t to = from + 1;
         for (; to + 1 < hull.size(); ++to) {
-            const Vertex& next = hull[to + 1];
-            const Real above = (slope(hull[from], next) - first) *
-                               static_cast<Real>(next.particles - hull[from].particles);
-            if (above - error > window) {
+            const Real before = slope(hull[to - 1], hull[to]);
+            const Real apart = slope(hull[to], hull[to + 1]) - before;
+            if (apart - error > window) {
                 break;
             }
-            if (!(above + error <= window)) {
-                return tl::unexpected(fmt::format(
-                    "at h = {:.12g} the lowest level of total Sz {} meets the edge of the ground "
-                    "space within its error",
-                    static_cast<double>(first),
-                    next.particles - solution.form.length() / 2.0));
+            if (!(apart + error <= window)) {
+                return tl::unexpected(
+                    fmt::format("two jumps near h = {:.12g} lie within the ground window of each "
+                                "other, or not, within their errors",
+                                static_cast<double>(before)));
             }
         }
         const Real step = static_cast<Real>(hull[to].particles - hull[from].particles);
         jumps.field.push_back(slope(hull[from], hull[to]));
-        jumps.error.push_back(error / step + real_epsilon * std::abs(first));
+        jumps.error.push_back(error / step + real_epsilon * std::abs(jumps.field.back()));
         jumps.particles.push_back(hull[to].particles);
         from = to;
     }

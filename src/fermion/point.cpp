@@ -174,7 +174,8 @@ Answer Point::susceptibility() {
 }
 
 Answer Point::jump_fields() {
-    const auto jumps = find_jumps(solution_, ground_window(problem_), context_);
+    const double window = ground_window({problem_.chain, problem_.terms, 0.0});
+    const auto jumps = find_jumps(solution_, window, context_);
     if (!jumps) {
         return Undecided{jumps.error()};
     }

@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 
 #include "chainmark/base/numerics.hpp"
+#include "chainmark/base/words.hpp"
 
 namespace chainmark {
 
@@ -21,7 +22,7 @@ std::string to_string(const Chain& chain) {
         return "infinite chain";
     }
     if (!chain.is_ring()) {
-        return fmt::format("open chain of {} sites", chain.length());
+        return "open chain of " + counted(static_cast<std::size_t>(chain.length()), "site");
     }
     if (chain.twist == 0.0) {
         return fmt::format("ring of {} sites", chain.length());

@@ -11,6 +11,7 @@ namespace chainmark {
 namespace {
 
 using Complex = std::complex<double>;
+using Wide = std::complex<long double>;
 
 bool has_ladder(const OperatorString& string) {
     return std::any_of(string.begin(), string.end(), [](const SiteFactor& factor) {
@@ -47,7 +48,8 @@ Expansion times(const Expansion& left, int site, const SiteMatrix& matrix) {
 }
 
 /// "0.5", "0.5+0.2j"
-std::string coefficient_text(Complex x) {
+std::string coefficient_text(Wide wide) {
+    const Complex x(wide);
     return x.imag() == 0.0 ? fmt::format("{}", x.real() + 0.0)
                            : fmt::format("{}{:+}j", x.real() + 0.0, x.imag());
 }
@@ -188,8 +190,8 @@ void TermCollector::add(Complex coefficient, const std::vector<PlacedMatrix>& pr
             }
         }
         Sum& sum = sums_[term.string];
-        sum.value += term.coefficient;
-        sum.weight += std::abs(term.coefficient);
+        sum.value += Wide(term.coefficient);
+        sum.weight += std::abs(Wide(term.coefficient));
     }
 }
 
@@ -202,15 +204,14 @@ void TermCollector::add_conjugate(Complex coefficient, const std::vector<PlacedM
 }
 
 Result<TermList> TermCollector::finish() const {
-    constexpr double rounding = 16 * epsilon;
+    constexpr long double hermitian = 16 * epsilon;  // of the couplings that were written
+    constexpr long double cancelled = 0x1p-58L;      // of the sum itself
     TermList list;
     list.cell = cell_;
     for (const auto& [string, sum] : sums_) {
-        const double noise = rounding * sum.weight;
         const auto partner = sums_.find(conjugate(string));
-        const Complex mirrored =
-            partner == sums_.end() ? Complex(0.0) : std::conj(partner->second.value);
-        if (std::abs(sum.value - mirrored) > 2 * noise) {
+        const Wide mirrored = partner == sums_.end() ? Wide(0) : std::conj(partner->second.value);
+        if (std::abs(sum.value - mirrored) > hermitian * sum.weight) {
             return tl::unexpected(Error{
                 ErrorCode::not_hermitian,
                 {},
@@ -223,13 +224,11 @@ Result<TermList> TermCollector::finish() const {
                 "add the missing term, or set add_conjugate = true"});
         }
         // The two halves of a conjugate pair are averaged so that H is Hermitian to the last bit.
-        Complex value = (sum.value + mirrored) / 2.0;
-        if (std::abs(value.imag()) <= noise) {
-            value.imag(0.0);
-        }
-        if (std::abs(value.real()) <= noise) {
-            value.real(0.0);
-        }
+        const Wide mean = (sum.value + mirrored) / 2.0L;
+        const auto rounded = [&](long double part) {
+            return std::abs(part) <= cancelled * sum.weight ? 0.0 : static_cast<double>(part);
+        };
+        const Complex value(rounded(mean.real()), rounded(mean.imag()));
         if (string.empty()) {
             list.constant = value.real();
         } else if (value != 0.0) {

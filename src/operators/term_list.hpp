@@ -101,14 +101,16 @@ public:
     /// The same for the Hermitian conjugate of the product.
     void add_conjugate(std::complex<double> coefficient, const std::vector<PlacedMatrix>& product);
 
-    /// The canonical list. What cancels to within rounding of its contributions is dropped.
+    /// The canonical list. What cancels to within the rounding of an extended-precision sum of its
+    /// contributions is dropped; the coefficients are rounded to double once.
     /// Fails with `not_hermitian`, naming a string, where the sum is not Hermitian.
     Result<TermList> finish() const;
 
 private:
+    /// Summed in extended precision, so that a small rest of large numbers is kept.
     struct Sum {
-        std::complex<double> value;
-        double weight = 0.0;  ///< sum of |contribution|, the scale of its rounding
+        std::complex<long double> value;
+        long double weight = 0.0L;  ///< sum of |contribution|, the scale of its rounding
     };
 
     Chain chain_;

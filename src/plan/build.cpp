@@ -12,6 +12,7 @@ namespace chainmark {
 namespace {
 
 constexpr std::size_t most_points = 100000;
+constexpr double largest_size = 1e100;  ///< of a coupling or field; squares stay within doubles
 
 Chain chain_at(const Case& c, const Parameters& point) {
     const double sites = parameter(point, "sites");
@@ -78,6 +79,17 @@ Result<PlacedTerm> placed_term(const CaseTerm& term,
         placed.coupling = draws(random, seed_at(random, point), std::max(count, 1));
     }
     return placed;
+}
+
+/// A string whose coefficient is so large or small that squares of it leave the range of doubles.
+std::string extreme_coefficient(const TermList& list) {
+    for (const Term& term : list.terms) {
+        const double size = std::abs(term.coefficient);
+        if (!(size <= largest_size && size >= 1 / largest_size)) {
+            return fmt::format("{} has a coefficient of size {}", to_string(term.string), size);
+        }
+    }
+    return std::abs(list.constant) <= largest_size ? "" : "the constant is too large";
 }
 
 /// Walks the axes like an odometer, the last one fastest.
@@ -244,6 +256,13 @@ Result<ProblemBuilder::Shared> ProblemBuilder::terms_at(const Parameters& point)
                     "use \"periodic\" or \"antiperiodic\" here"},
                    point));
     }
+    if (const std::string extreme = extreme_coefficient(*list); !extreme.empty()) {
+        return tl::unexpected(placed({ErrorCode::bad_value,
+                                      case_.system_place,
+                                      extreme,
+                                      "couplings between 1e-100 and 1e100 in size, or 0"},
+                                     point));
+    }
     SplitField split = split_uniform_field(*list, chain);
     const Shared shared{std::make_shared<const TermList>(std::move(split.rest)), split.field};
     return shared_.emplace(key, shared).first->second;
@@ -260,7 +279,15 @@ Result<Problem> ProblemBuilder::build_without_field(const Parameters& point) {
 Result<Problem> ProblemBuilder::build(const Parameters& point) {
     Result<Problem> problem = build_without_field(point);
     if (problem && case_.family != nullptr) {
-        problem->field += parameter(point, "h");
+        const double h = parameter(point, "h");
+        if (h != 0.0 && !(std::abs(h) <= largest_size && std::abs(h) >= 1 / largest_size)) {
+            return tl::unexpected(placed({ErrorCode::bad_value,
+                                          case_.axis("h").where,
+                                          fmt::format("the field h = {} is out of range", h),
+                                          "fields between 1e-100 and 1e100 in size, or 0"},
+                                         point));
+        }
+        problem->field += h;
     }
     return problem;
 }

@@ -8,10 +8,8 @@ namespace chainmark {
 namespace {
 
 std::string cost_text(const Coverage& coverage) {
-    constexpr double mebibyte = 1024.0 * 1024;
-    return fmt::format("about {:.2g} s, {:.2g} MiB",
-                       std::max(coverage.seconds, 1e-3),
-                       std::max(coverage.bytes / mebibyte, 1e-3));
+    return fmt::format(
+        "about {:.2g} s, {}", std::max(coverage.seconds, 1e-3), size_text(coverage.bytes));
 }
 
 /// What one route does for one bundle: covered labels, and refusals by reason.
@@ -37,7 +35,41 @@ std::string job_text(const Job& job) {
     return text;
 }
 
+std::string bundle_text(const Bundle& bundle, const std::vector<Job>& jobs) {
+    const auto& problems = bundle.batch.problems;
+    std::string text = fmt::format("  {}{}, {} field{}\n",
+                                   to_string(problems.front().chain),
+                                   bundle.beside ? " beside the finite ones" : "",
+                                   problems.size(),
+                                   problems.size() == 1 ? "" : "s");
+    for (const Job& job : jobs) {
+        if (job.bundle == &bundle) {
+            text += job_text(job);
+        }
+    }
+    return text;
+}
+
+void count_block(std::vector<std::pair<std::string, int>>& blocks, const std::string& block) {
+    for (auto& [text, count] : blocks) {
+        if (text == block) {
+            ++count;
+            return;
+        }
+    }
+    blocks.emplace_back(block, 1);
+}
+
 }  // namespace
+
+std::string size_text(double bytes) {
+    constexpr double kibi = 1024.0;
+    if (bytes < kibi * kibi) {
+        return fmt::format("{:.2g} KiB", std::max(bytes, 1.0) / kibi);
+    }
+    return bytes < 1000 * kibi * kibi ? fmt::format("{:.3g} MiB", bytes / kibi / kibi)
+                                      : fmt::format("{:.2g} GiB", bytes / kibi / kibi / kibi);
+}
 
 std::string Plan::describe() const {
     std::string text;
@@ -45,21 +77,15 @@ std::string Plan::describe() const {
         const CaseLayout& layout = work_->cases[c];
         text += fmt::format(
             "{}  {}\n  {} points\n", layout.source->name, layout.source->title, layout.rows.size());
-        const Bundle* last = nullptr;
-        for (const Job& job : work_->jobs) {
-            if (job.bundle->case_index != c) {
-                continue;
+        // Chains that differ in a coupling alone have the same text and are counted.
+        std::vector<std::pair<std::string, int>> blocks;
+        for (const auto& bundle : work_->bundles) {
+            if (bundle->case_index == c) {
+                count_block(blocks, bundle_text(*bundle, work_->jobs));
             }
-            if (job.bundle != last) {
-                const auto& problems = job.bundle->batch.problems;
-                text += fmt::format("  {}{}, {} field{}\n",
-                                    to_string(problems.front().chain),
-                                    job.bundle->beside ? " beside the finite ones" : "",
-                                    problems.size(),
-                                    problems.size() == 1 ? "" : "s");
-                last = job.bundle;
-            }
-            text += job_text(job);
+        }
+        for (const auto& [block, count] : blocks) {
+            text += count == 1 ? block : fmt::format("  {} times:\n{}", count, block);
         }
     }
     return text;

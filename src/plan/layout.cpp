@@ -1,7 +1,6 @@
 #include <algorithm>
 #include <map>
 #include <set>
-#include <tuple>
 
 #include "chainmark/plan/build.hpp"
 #include "chainmark/plan/work.hpp"
@@ -38,15 +37,24 @@ private:
         return parameter(point, "sites") == infinite_sites;
     }
 
-    std::vector<std::size_t> asked(const Parameters& point, bool per_chain) const {
+    /// Quantities with a meaning on such a chain.
+    std::vector<std::size_t> asked_of(bool infinite) const {
         std::vector<std::size_t> indices;
-        const Where missing = is_infinite(point) ? Where::finite : Where::infinite;
+        const Where missing = infinite ? Where::finite : Where::infinite;
         for (std::size_t q = 0; q < case_.quantities.size(); ++q) {
-            const QuantitySpec& spec = *case_.quantities[q].query.spec;
-            if (spec.per_chain == per_chain && spec.where != missing) {
+            if (case_.quantities[q].query.spec->where != missing) {
                 indices.push_back(q);
             }
         }
+        return indices;
+    }
+
+    /// Those of them that are asked at every point, or once per chain.
+    std::vector<std::size_t> asked(const Parameters& point, bool per_chain) const {
+        std::vector<std::size_t> indices = asked_of(is_infinite(point));
+        std::erase_if(indices, [&](std::size_t q) {
+            return case_.quantities[q].query.spec->per_chain != per_chain;
+        });
         return indices;
     }
 
@@ -106,18 +114,22 @@ private:
         return work_.cases.back().rows.size() - 1;
     }
 
-    /// Adds a problem to the bundle with the same terms and queries, or opens one. Where the field
-    /// does not commute every problem is work of its own and stays alone.
+    /// Adds a problem to the bundle with the same terms, or opens one. A bundle asks everything
+    /// that the case asks of such a chain, so that quantities of a point and of the whole chain
+    /// come from one solution. Where the field does not commute every problem is work of its own:
+    /// it stays alone and asks only what it needs.
     void add_to_bundle(const Problem& problem,
                        std::size_t row,
                        const std::vector<std::size_t>& quantities,
                        bool beside) {
-        const Key key{problem.terms.get(), quantities, beside};
+        const Key key{problem.terms.get(), beside};
         const bool shares = conserves_sz(*problem.terms);
         auto at = open_.find(key);
         if (at == open_.end() || !shares) {
             auto bundle = std::make_unique<Bundle>();
-            for (const std::size_t q : quantities) {
+            bundle->quantities =
+                shares && !beside ? asked_of(problem.chain.is_infinite()) : quantities;
+            for (const std::size_t q : bundle->quantities) {
                 bundle->batch.queries.push_back(case_.quantities[q].query);
             }
             bundle->beside = beside;
@@ -138,17 +150,19 @@ private:
         const std::size_t index = at->second;
         if (fresh) {
             bundle.batch.problems.push_back(problem);
-            bundle.targets.emplace_back(quantities.size());
+            bundle.targets.emplace_back(bundle.quantities.size());
         }
         const Row& to = work_.cases.back().rows[row];
-        for (std::size_t i = 0; i < quantities.size(); ++i) {
-            const auto slot = std::find(to.quantities.begin(), to.quantities.end(), quantities[i]);
-            bundle.targets[index][i].push_back(
-                {case_index_, row, static_cast<std::size_t>(slot - to.quantities.begin())});
+        const auto position = [](const std::vector<std::size_t>& all, std::size_t q) {
+            return static_cast<std::size_t>(std::find(all.begin(), all.end(), q) - all.begin());
+        };
+        for (const std::size_t q : quantities) {
+            bundle.targets[index][position(bundle.quantities, q)].push_back(
+                {case_index_, row, position(to.quantities, q)});
         }
     }
 
-    using Key = std::tuple<const TermList*, std::vector<std::size_t>, bool>;
+    using Key = std::pair<const TermList*, bool>;
 
     const Case& case_;
     std::size_t case_index_;

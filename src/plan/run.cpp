@@ -2,6 +2,7 @@
 #include <chrono>
 #include <condition_variable>
 #include <mutex>
+#include <set>
 #include <stdexcept>
 #include <thread>
 
@@ -15,12 +16,6 @@ namespace {
 constexpr double big_job_seconds = 1.0;                 ///< from here on a job gets all threads
 constexpr auto grace = std::chrono::milliseconds(600);  ///< for workers after a stop request
 
-std::string size_text(double bytes) {
-    constexpr double mebibyte = 1024.0 * 1024;
-    return bytes < 100 * mebibyte ? fmt::format("{:.2g} MiB", bytes / mebibyte)
-                                  : fmt::format("{:.2g} GiB", bytes / mebibyte / 1024);
-}
-
 /// Everything that workers touch. Kept alive by every worker, so that one that cannot be stopped
 /// (inside a library call) can be left behind.
 struct State {
@@ -30,7 +25,7 @@ struct State {
     std::mutex mutex;
     std::condition_variable changed;
     std::vector<CaseResult> results;
-    std::vector<std::vector<std::size_t>> open_jobs;  ///< [case][row]: answers still to come
+    std::set<const Job*> unfinished;
     std::size_t active = 0;
     std::exception_ptr failure;
     bool abandoned = false;  ///< late answers of workers left behind are dropped
@@ -49,14 +44,9 @@ void prepare(State& state) {
                 point.quantities.emplace_back().quantity = &layout.source->quantities[q];
             }
         }
-        state.open_jobs.emplace_back(layout.rows.size(), 0);
     }
     for (const Job& job : work.jobs) {
-        for (const auto& problem : job.bundle->targets) {
-            for (const Target& target : problem.front()) {
-                ++state.open_jobs[target.case_index][target.row];
-            }
-        }
+        state.unfinished.insert(&job);
     }
 }
 
@@ -76,11 +66,8 @@ void store(QuantityResult& to, const Answer& answer, const Job& job) {
     }
 }
 
+/// Puts the answers where they go. The lock is held.
 void store_all(State& state, const Job& job, const Answers& answers) {
-    const std::lock_guard lock(state.mutex);
-    if (state.abandoned) {
-        return;
-    }
     for (std::size_t p = 0; p < answers.size(); ++p) {
         for (std::size_t q = 0; q < answers[p].size(); ++q) {
             for (const Target& target : job.bundle->targets[p][q]) {
@@ -88,9 +75,14 @@ void store_all(State& state, const Job& job, const Answers& answers) {
                 store(point.quantities[target.slot], answers[p][q], job);
             }
         }
-        for (const Target& target : job.bundle->targets[p].front()) {
-            --state.open_jobs[target.case_index][target.row];
-        }
+    }
+}
+
+void finish_job(State& state, const Job& job, const Answers& answers) {
+    const std::lock_guard lock(state.mutex);
+    if (!state.abandoned) {
+        store_all(state, job, answers);
+        state.unfinished.erase(&job);
     }
 }
 
@@ -148,9 +140,12 @@ void work_through(const std::shared_ptr<State>& state,
         for (std::size_t i = (*next)++; i < jobs->size(); i = (*next)++) {
             poll(context);
             const Job& job = *(*jobs)[i];
-            store_all(*state, job, evaluate(job, context));
+            if (context.progress && job.coverage.covers_any()) {
+                context.progress->started(describe(job));
+            }
+            finish_job(*state, job, evaluate(job, context));
             if (context.progress) {
-                context.progress->advance(job.coverage.seconds, describe(job));
+                context.progress->finished(job.coverage.seconds);
             }
         }
     } catch (const Interrupted&) {
@@ -212,18 +207,33 @@ void judge(QuantityResult& result, const Tolerance& case_tolerance) {
         compare_references(result.references, result.quantity->tolerance.value_or(case_tolerance));
 }
 
-/// Drops rows with answers still to come, compares the others.
+bool has_answer(const PointResult& point) {
+    return std::any_of(point.quantities.begin(), point.quantities.end(), [](const auto& quantity) {
+        return !quantity.references.empty();
+    });
+}
+
+/// After an interrupt: routes that did not come to an answer say so, and points where none did are
+/// dropped.
+void drop_unfinished(State& state) {
+    if (state.unfinished.empty()) {
+        return;
+    }
+    for (const Job* job : state.unfinished) {
+        store_all(state, *job, same_everywhere(*job, Undecided{"interrupted before it answered"}));
+    }
+    for (CaseResult& result : state.results) {
+        std::erase_if(result.points, [](const PointResult& p) { return !has_answer(p); });
+    }
+}
+
 std::vector<CaseResult> finish(State& state) {
     const std::lock_guard lock(state.mutex);
-    for (std::size_t c = 0; c < state.results.size(); ++c) {
-        CaseResult& result = state.results[c];
-        std::vector<PointResult> finished;
-        for (std::size_t row = 0; row < result.points.size(); ++row) {
-            if (state.open_jobs[c][row] == 0) {
-                finished.push_back(std::move(result.points[row]));
-            }
+    drop_unfinished(state);
+    for (CaseResult& result : state.results) {
+        if (result.points.empty()) {
+            result.verdict = Verdict::undecided;
         }
-        result.points = std::move(finished);
         for (PointResult& point : result.points) {
             for (QuantityResult& quantity : point.quantities) {
                 judge(quantity, result.source->tolerance);

@@ -29,6 +29,7 @@ struct Target {
 /// Problems that share their terms, and the places their answers go to.
 struct Bundle {
     Batch batch;
+    std::vector<std::size_t> quantities;  ///< of each query: index into Case::quantities
     std::vector<std::vector<std::vector<Target>>> targets;  ///< [problem][query] -> where to
     bool beside = false;  ///< route `limit` shown beside finite chains, without a vote
     std::size_t case_index = 0;
@@ -46,6 +47,9 @@ struct Plan::Work {
     std::vector<std::unique_ptr<Bundle>> bundles;
     std::vector<Job> jobs;
 };
+
+/// "7.2 KiB", "31 MiB", "1.6 GiB".
+std::string size_text(double bytes);
 
 /// Trends of every quantity that has the infinite chain beside it.
 std::vector<Trend> size_trends(const CaseResult& result);

@@ -16,7 +16,9 @@ namespace {
 
 constexpr std::size_t note_indent = 8;
 constexpr std::size_t most_elements = 6;  ///< of an array
-constexpr int element_digits = 10;        ///< of an array's element, significant
+constexpr std::size_t few_elements = 3;   ///< arrays up to this are shown to all their digits
+constexpr int all_digits = 15;
+constexpr int element_digits = 10;  ///< of a longer array's elements, significant
 
 std::string note(const std::string& text) {
     return wrapped(text, note_indent, page_width);
@@ -49,12 +51,13 @@ std::string list_below(const std::string& name, std::vector<std::string> element
 }
 
 std::string array_below(const std::string& name, const Reference& reference) {
-    if (reference.value.kind != Kind::array || reference.value.data.empty()) {
+    if (reference.value.kind != Kind::array || reference.value.data.size() < 2) {
         return "";
     }
     std::vector<std::string> elements(reference.value.data.size());
+    const int digits = elements.size() <= few_elements ? all_digits : element_digits;
     for (std::size_t i = 0; i < std::min(elements.size(), most_elements); ++i) {
-        elements[i] = element_text(reference, i, element_digits);
+        elements[i] = element_text(reference, i, digits);
     }
     return list_below(name, elements);
 }
@@ -84,13 +87,15 @@ std::string own_value(const Reference& reference, std::size_t element) {
     }
     const bool ordinary = shown_status(value, element) == Special::none;
     return size +
-           (ordinary ? number_text(value.real_at(element)) : element_text(reference, element, 15)) +
+           (ordinary ? number_text(value.real_at(element))
+                     : element_text(reference, element, all_digits)) +
            (ordinary ? fmt::format(" +- {:.2g}", bound_at(reference, element)) : "") +
            fmt::format(" ({})", to_string(reference.basis));
 }
 
 std::string reason_below(const QuantityResult& result) {
-    if (!is_bad(result.comparison.verdict)) {
+    // Where no route answered, the table's last lines say why.
+    if (!is_bad(result.comparison.verdict) || result.references.empty()) {
         return "";
     }
     std::string lines =
@@ -116,9 +121,11 @@ std::string value_cell(const Reference& reference) {
         case Kind::text:
             return reference.value.text;
         case Kind::number:
-            return element_text(reference, 0, 15);
+            return element_text(reference, 0, all_digits);
         case Kind::array:
-            return fmt::format("[{} values]", reference.value.data.size());
+            return reference.value.data.size() == 1
+                       ? element_text(reference, 0, all_digits)
+                       : fmt::format("[{} values]", reference.value.data.size());
     }
     return "";
 }

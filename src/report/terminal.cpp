@@ -126,11 +126,10 @@ std::string not_run_text(const std::vector<Entry>& entries) {
     std::string lines;
     for (const auto& [what, count] : points) {
         const std::string where =
-            entries.size() == 1 ? "" : fmt::format(" ({} of {} points)", count, entries.size());
-        lines += wrapped(
-            fmt::format("no answer from {}{}: {}", to_string(what.first), where, what.second),
-            table_indent,
-            page_width);
+            entries.size() == 1 ? "" : fmt::format(" at {} of {} points", count, entries.size());
+        lines += wrapped(fmt::format("without {}{}: {}", to_string(what.first), where, what.second),
+                         table_indent,
+                         page_width);
     }
     return lines;
 }

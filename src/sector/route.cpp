@@ -37,29 +37,35 @@ struct Staircase {
 };
 
 /// The lower convex hull of (Sz, E): in the field h the ground state minimizes E - h Sz, so the
-/// corners are the Sz that become ground states and the slopes between them the fields. Corners
-/// that lie within the ground window of their neighbours' chord jump together with them.
+/// corners are the Sz that become ground states and the slopes between them the fields. Fields that
+/// lie within `window` of the next are one jump.
 Staircase staircase(const std::vector<Solution::SzMinimum>& lowest, double window) {
-    std::vector<Solution::SzMinimum> hull;
-    const auto height = [](const auto& a, const auto& b, const auto& c) {
-        return b.energy - (a.energy + (c.energy - a.energy) * (b.sz - a.sz) / (c.sz - a.sz));
+    const auto slope = [](const auto& a, const auto& b) {
+        return (b.energy - a.energy) / (b.sz - a.sz);
     };
+    std::vector<Solution::SzMinimum> hull;
     for (const auto& point : lowest) {
-        while (hull.size() >= 2 && height(hull[hull.size() - 2], hull.back(), point) >= -window) {
+        while (hull.size() >= 2 &&
+               slope(hull[hull.size() - 2], hull.back()) >= slope(hull.back(), point)) {
             hull.pop_back();
         }
         hull.push_back(point);
     }
     Staircase result;
-    for (std::size_t i = 0; i < hull.size(); ++i) {
-        result.sz.push_back(hull[i].sz);
-        if (i > 0) {
-            const double step = hull[i].sz - hull[i - 1].sz;
-            const double field = (hull[i].energy - hull[i - 1].energy) / step;
-            result.fields.push_back(field);
-            result.bounds.push_back((hull[i].bound + hull[i - 1].bound) / step +
-                                    2 * epsilon * std::abs(field));
+    result.sz.push_back(hull.front().sz);
+    for (std::size_t from = 0; from + 1 < hull.size();) {
+        std::size_t to = from + 1;
+        while (to + 1 < hull.size() &&
+               slope(hull[to], hull[to + 1]) - slope(hull[to - 1], hull[to]) <= window) {
+            ++to;
         }
+        const double step = hull[to].sz - hull[from].sz;
+        const double field = slope(hull[from], hull[to]);
+        result.fields.push_back(field);
+        result.bounds.push_back((hull[to].bound + hull[from].bound) / step +
+                                2 * epsilon * std::abs(field));
+        result.sz.push_back(hull[to].sz);
+        from = to;
     }
     return result;
 }

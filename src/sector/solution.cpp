@@ -4,6 +4,7 @@
 #include <cmath>
 #include <numeric>
 
+#include "chainmark/base/hermitian_eigen.hpp"
 #include "chainmark/base/numerics.hpp"
 #include "chainmark/base/parallel.hpp"
 
@@ -14,10 +15,23 @@ namespace {
 constexpr std::size_t largest_momentum_size = 1500;
 constexpr double largest_complete_sector = 4096;
 
-void sort_by_energy(std::vector<BlockLevel>& levels) {
-    std::sort(levels.begin(), levels.end(), [](const BlockLevel& a, const BlockLevel& b) {
+/// Sorts levels of several blocks and gives each rank its bound.
+template <class Level>
+void sort_by_energy(std::vector<Level>& levels) {
+    std::stable_sort(levels.begin(), levels.end(), [](const Level& a, const Level& b) {
         return a.energy < b.energy;
     });
+    const auto size = static_cast<Eigen::Index>(levels.size());
+    Eigen::VectorXd energies(size);
+    Eigen::VectorXd bounds(size);
+    for (Eigen::Index i = 0; i < size; ++i) {
+        energies[i] = levels[static_cast<std::size_t>(i)].energy;
+        bounds[i] = levels[static_cast<std::size_t>(i)].bound;
+    }
+    bounds = rank_bounds(energies, bounds);
+    for (Eigen::Index i = 0; i < size; ++i) {
+        levels[static_cast<std::size_t>(i)].bound = bounds[i];
+    }
 }
 
 bool use_momentum(const Symmetries& symmetries, const Chain& chain) {
@@ -40,15 +54,19 @@ Solution::Solution(const Problem& problem, const Context& context)
     }
 }
 
+double Solution::shifted(double energy, double sz, double field, double& bound) const {
+    const double zeeman = field_outside() ? -field * sz : 0.0;
+    const double result = energy + constant_ + zeeman;
+    bound += epsilon * (std::abs(energy) + std::abs(constant_) + std::abs(zeeman));
+    return result;
+}
+
 BlockLevel Solution::at(std::size_t block, std::size_t level, double field) const {
     const Block& b = blocks_[block];
-    double shift = constant_;
-    if (field_outside()) {
-        shift -= field * (b.sector().value - chain_.length() / 2.0);
-    }
-    const double energy = b.energy(level) + shift;
-    const double rounding = epsilon * (std::abs(shift) + std::abs(energy));
-    return {block, level, energy, b.bound(level) + rounding};
+    double bound = b.bound(level);
+    const double energy =
+        shifted(b.energy(level), b.sector().value - chain_.length() / 2.0, field, bound);
+    return {block, level, energy, bound};
 }
 
 void Solution::extend(std::size_t block, std::size_t count) {
@@ -194,17 +212,10 @@ std::vector<LabelledLevel> Solution::all_levels(const Problem& problem) {
     }
     std::vector<LabelledLevel> levels = *all_;
     for (LabelledLevel& level : levels) {
-        double shift = constant_;
-        if (field_outside()) {
-            shift -= problem.field * level.labels.sz.value();
-        }
-        level.energy += shift;
-        level.bound += epsilon * (std::abs(shift) + std::abs(level.energy));
+        level.energy =
+            shifted(level.energy, level.labels.sz.value_or(0.0), problem.field, level.bound);
     }
-    std::stable_sort(
-        levels.begin(), levels.end(), [](const LabelledLevel& a, const LabelledLevel& b) {
-            return a.energy < b.energy;
-        });
+    sort_by_energy(levels);
     return levels;
 }
 

@@ -64,6 +64,8 @@ public:
     Completeness completeness(std::size_t block) const;
 
 private:
+    /// energy + constant - field sz; adds the rounding of the sum to `bound`.
+    double shifted(double energy, double sz, double field, double& bound) const;
     BlockLevel at(std::size_t block, std::size_t level, double field) const;
     void extend(std::size_t block, std::size_t count);
     void extend_all();

@@ -55,7 +55,8 @@ std::string broken_translation(const Chain& chain, const TermList& terms) {
 }
 
 std::string line(const char* name, bool present, const std::string& remark) {
-    return fmt::format("  {:<24}{:<5}{}\n", name, present ? "yes" : "no", remark);
+    return remark.empty() ? fmt::format("  {:<26}{}\n", name, present ? "yes" : "no")
+                          : fmt::format("  {:<26}{:<5}{}\n", name, present ? "yes" : "no", remark);
 }
 
 }  // namespace

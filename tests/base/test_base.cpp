@@ -34,6 +34,18 @@ TEST_CASE("the nearest word") {
     CHECK(nearest_word("temperature", words).empty());
     CHECK(suggestion("spni", words) == "did you mean 'spin'? (allowed: sites, boundary, spin)");
     CHECK(suggestion("zzzzzz", words) == "allowed: sites, boundary, spin");
+    const std::vector<std::string> short_words = {"J", "h", "xx", "XXZ"};
+    CHECK(nearest_word("j", short_words) == "J");
+    CHECK(nearest_word("x", short_words).empty());
+    CHECK(nearest_word("", short_words).empty());
+    CHECK(nearest_word("Jx", short_words) == "J");
+    CHECK(nearest_word("xxz", short_words) == "XXZ");
+}
+
+TEST_CASE("one of a thing and more") {
+    CHECK(counted(0, "site") == "0 sites");
+    CHECK(counted(1, "site") == "1 site");
+    CHECK(counted(2, "site") == "2 sites");
 }
 
 TEST_CASE("binomials") {

@@ -57,6 +57,11 @@ TEST_CASE("what only a family gives a meaning needs one") {
                      {ErrorCode::unknown_key, "c.toml:7:1", {"'Delta' without a family"}});
     check_only_error(changed("[hamiltonian]", "[hamiltonian]\nfamly = \"xx\"", raw_case),
                      {ErrorCode::unknown_key, "c.toml:7:1", {"'famly'", "'family'"}});
+    check_only_error(
+        changed("[hamiltonian]", "[hamiltonian]\nroutes = 1", raw_case),
+        {ErrorCode::unknown_key, "c.toml:7:1", {"'routes' is a key of the top level"}});
+    check_only_error(changed("[hamiltonian]", "[hamiltonian]\nx = 1", raw_case),
+                     {ErrorCode::unknown_key, "c.toml:7:1", {"'x'; allowed: family, h, term"}});
 }
 
 TEST_CASE("a Hamiltonian needs a family or a term") {
@@ -100,9 +105,14 @@ TEST_CASE("names of parameters") {
 
 TEST_CASE("parameters that no term uses, and those that do not exist") {
     check_only_error(changed("Jxy = [0.5, 1.0]", "Jxy = 1\nJz = 2", raw_case),
-                     {ErrorCode::bad_value, "c.toml:6:1", {"'Jz' is used by no term", "use Jxy"}});
-    check_only_error(changed("[hamiltonian]", "[parameters]\nJz = 2\n[hamiltonian]"),
-                     {ErrorCode::bad_value, "c.toml:5:1", {"'Jz'", "no term has coupling"}});
+                     {ErrorCode::bad_value,
+                      "c.toml:6:1",
+                      {"'Jz' is used by no term",
+                       "remove it, or use it in a [[hamiltonian.term]]",
+                       "coupling = { parameter = \"Jz\" }"}});
+    check_only_error(
+        changed("[hamiltonian]", "[parameters]\nJz = 2\n[hamiltonian]"),
+        {ErrorCode::bad_value, "c.toml:5:1", {"'Jz' is used by no term", "remove it"}});
     check_only_error(changed("\"Jxy\"", "\"Jyx\"", raw_case),
                      {ErrorCode::unknown_name, "c.toml:10:26", {"\"Jyx\"", "did you mean 'Jxy'"}});
     check_only_error(changed("[parameters]\nJxy = [0.5, 1.0]\n", "", raw_case),

@@ -39,6 +39,15 @@ TEST_CASE("bare names find their table") {
     CHECK(case_of(small_case, {{"title", "short"}}).title == "short");
     CHECK(case_of(small_case, {{"title", "\"two words\""}}).title == "two words");
     CHECK(case_of(raw_case, {{"Jxy", "3"}}).axis("Jxy").values == Numbers{3});
+    CHECK(case_of(small_case, {{"coincident", "once"}}).coincident == Coincident::once);
+    CHECK(case_of(small_case, {{"combine", "zip"}}).zip);
+    check({"spin", "3/2"}, {ErrorCode::bad_value, "--set spin=3/2", {"spin 1/2 only"}});
+}
+
+TEST_CASE("a name that the case gives comes before the keys of tables") {
+    const std::string text =
+        changed("\"Jxy\"", "\"spin\"", changed("Jxy = 1", "spin = 1", raw_case));
+    CHECK(case_of(text, {{"spin", "3"}}).axis("spin").values == Numbers{3});
 }
 
 TEST_CASE("dotted keys are taken as they stand") {
@@ -76,11 +85,14 @@ TEST_CASE("a setting that means nothing") {
     check({"sistem.sites", "9"}, {ErrorCode::bad_option, "--set sistem.sites=9", {"'system'"}});
     check({"system.", "9"}, {ErrorCode::bad_option, "--set system.=9", {"SECTION.NAME"}});
     check({"system.boundary.twist", "9"},
-          {ErrorCode::bad_option, "--set system.boundary.twist=9", {"SECTION.NAME"}});
+          {ErrorCode::bad_option, "--set system.boundary.twist=9", {"two parts, SECTION.NAME"}});
+    check({"a.b.c", "1"},
+          {ErrorCode::bad_option, "--set a.b.c=1", {"'a.b.c'", "two parts, SECTION.NAME"}});
     check({"format", "2"}, {ErrorCode::bad_option, "--set format=2", {"'format'"}});
     const Errors errors = errors_of("grid = 3\n" + small_case, {{"grid.combine", "zip"}});
     REQUIRE(errors.size() == 2);
-    CHECK(to_string(errors[1]) == "--set grid.combine=zip: 'grid' is no table in the file");
+    CHECK(to_string(errors[1]) ==
+          "--set grid.combine=zip: 'grid' is no table in the file; expected a table [grid]");
 }
 
 TEST_CASE("a value that is no TOML") {
@@ -96,6 +108,8 @@ TEST_CASE("what a set value does wrong is told of the setting") {
     check({"sites", "[8, 2.5]"}, {ErrorCode::wrong_type, "--set sites=[8, 2.5]", {"2.5"}});
     check({"boundary", "opn"}, {ErrorCode::unknown_name, "--set boundary=opn", {"'open'"}});
     check({"system.foo", "1"}, {ErrorCode::unknown_key, "--set system.foo=1", {"'foo'"}});
+    check({"system.title", "1"},
+          {ErrorCode::unknown_key, "--set system.title=1", {"'title'; allowed: sites"}});
     check({"J", "inf"}, {ErrorCode::bad_value, "--set J=inf", {"finite"}});
     check({"J", "x"}, {ErrorCode::wrong_type, "--set J=x", {"the text \"x\""}});
     check({"Delta", "1"}, {ErrorCode::unknown_key, "--set Delta=1", {"'Delta'"}});

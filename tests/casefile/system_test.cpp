@@ -51,6 +51,7 @@ TEST_CASE("wrong sites") {
     check("true", {ErrorCode::wrong_type, "c.toml:3:9", {"true", "\"infinite\""}});
     check("1979-05-27", {ErrorCode::wrong_type, "c.toml:3:9", {"a date or time"}});
     check("\"infinit\"", {ErrorCode::unknown_name, "c.toml:3:9", {"infinit", "'infinite'"}});
+    check("\"many\"", {ErrorCode::unknown_name, "c.toml:3:9", {"infinite, or a whole number"}});
     check("[8, [9]]", {ErrorCode::wrong_type, "c.toml:3:13", {"a list", "whole number"}});
     check("[8, 8]", {ErrorCode::bad_value, "c.toml:3:13", {"the value 8 twice"}});
     check("{ from = 4, to = 9, count = 3 }", {ErrorCode::bad_value, "c.toml:3:9", {"6.5"}});
@@ -59,7 +60,11 @@ TEST_CASE("wrong sites") {
 
 TEST_CASE("a ring needs three sites, an open chain does not") {
     check_only_error(with_sites("[2, 8]"),
-                     {ErrorCode::bad_chain, "c.toml:3:10", {"ring of 2", "3 sites", "\"open\""}});
+                     {ErrorCode::bad_chain,
+                      "c.toml:3:10",
+                      {"a ring of 2 sites;", "3 sites", "one or two", "\"open\""}});
+    check_only_error(with_sites("1"),
+                     {ErrorCode::bad_chain, "c.toml:3:9", {"a ring of 1 site;", "one or two"}});
     CHECK(case_of(changed("[8, 12]", "2\nboundary = \"open\"")).axis("sites").values == Numbers{2});
 }
 
@@ -87,10 +92,15 @@ TEST_CASE("the boundary") {
         check_only_error(with_system("boundary = " + boundary), expected);
     };
     check("\"perodic\"", {ErrorCode::unknown_name, "c.toml:4:12", {"perodic", "'periodic'"}});
+    check("\"ring\"",
+          {ErrorCode::unknown_name,
+           "c.toml:4:12",
+           {"allowed: periodic, open, antiperiodic, or { twist = radians }"}});
     check("1", {ErrorCode::wrong_type, "c.toml:4:12", {"the number 1", "twist"}});
     check("{ twist = inf }", {ErrorCode::bad_value, "c.toml:4:22", {"inf", "finite"}});
     check("{ twist = \"pi\" }", {ErrorCode::wrong_type, "c.toml:4:22", {"\"pi\"", "a number"}});
-    check("{}", {ErrorCode::missing_key, "c.toml:4:12", {"no 'twist'"}});
+    check("{}",
+          {ErrorCode::missing_key, "c.toml:4:12", {"no 'twist'", "expected { twist = radians }"}});
     check("{ twist = 1, phi = 2 }", {ErrorCode::unknown_key, "c.toml:4:25", {"'phi'"}});
 }
 
@@ -109,13 +119,32 @@ TEST_CASE("unknown and missing keys of [system]") {
     check_only_error(with_system("temperature = 0.5"),
                      {ErrorCode::unknown_key, "c.toml:4:1", {"'temperature'"}});
     check_only_error(changed("sites = [8, 12]\n", ""),
-                     {ErrorCode::missing_key, "c.toml:2:2", {"[system] has no 'sites'"}});
+                     {ErrorCode::missing_key,
+                      "c.toml:2:2",
+                      {"[system] has no 'sites'", "give the number of sites"}});
+    check_only_error(with_system("x = 1"), {ErrorCode::unknown_key, "c.toml:4:1", {"; allowed: "}});
     check_only_error(changed("[system]\nsites = [8, 12]\n", ""),
                      {ErrorCode::missing_key, "c.toml", {"'system'"}});
     check_only_error(changed("[system]\nsites = [8, 12]\n", "system = 4\n"),
                      {ErrorCode::wrong_type, "c.toml:2:10", {"'system'", "[system]"}});
     check_only_error(changed("[system]", "[[system]]"),
                      {ErrorCode::wrong_type, "c.toml:2:1", {"a list", "[system]"}});
+}
+
+TEST_CASE("a key of the top level below a [table]") {
+    const std::string hint = "is a key of the top level, and those stand above the first [table]";
+    check_only_error(with_system("title = \"x\""),
+                     {ErrorCode::unknown_key, "c.toml:4:1", {"[system]", "'title' " + hint}});
+    check_only_error(with_system("quantity = 3"),
+                     {ErrorCode::unknown_key, "c.toml:4:1", {"'quantity' " + hint}});
+    check_only_error(
+        small_case + "title = \"x\"\n",
+        {ErrorCode::unknown_key, "c.toml:9:1", {"the quantity 'ground_energy'", hint}});
+    const Errors errors =
+        errors_of("[system]\nformat = 1\n" + changed("format = 1\n[system]\n", ""));
+    REQUIRE(errors.size() == 2);
+    CHECK(to_string(errors[0]).find("no 'format'") != std::string::npos);
+    CHECK(to_string(errors[1]).find("'format' " + hint) != std::string::npos);
 }
 
 TEST_CASE("grids of numbers") {

@@ -72,7 +72,7 @@ TEST_CASE("offsets or sites") {
     check(head + "offsets = [0, 1]\nsites = [0, 1]",
           {ErrorCode::bad_value, "c.toml:10:1", {"both 'offsets' and 'sites'"}});
     check(head + "offsets = [0]",
-          {ErrorCode::bad_value, "c.toml:6:1", {"2 operators and 1 offsets"}});
+          {ErrorCode::bad_value, "c.toml:6:1", {"2 operators and 1 offset;"}});
     check(head + "offsets = [1, 2]", {ErrorCode::bad_value, "c.toml:9:11", {"starts at 1"}});
     check(head + "offsets = [0, -1]", {ErrorCode::bad_value, "c.toml:9:15", {"-1"}});
     check(head + "offsets = [0, 1.0]", {ErrorCode::wrong_type, "c.toml:9:15", {"as in 1"}});
@@ -104,7 +104,7 @@ TEST_CASE("wrong numbers as couplings") {
     wrong("[1, 2]",
           {ErrorCode::bad_value, "c.toml:9:12", {"2 numbers", "8 placements", "ring of 8"}});
     check("operators = [\"Sz\"]\nsites = [3]\ncoupling = [1, 2]",
-          {ErrorCode::bad_value, "c.toml:9:12", {"2 numbers", "1 placements"}});
+          {ErrorCode::bad_value, "c.toml:9:12", {"2 numbers", "1 placement on"}});
 }
 
 TEST_CASE("a list per placement fits the open chain") {
@@ -124,7 +124,7 @@ TEST_CASE("couplings that are drawn") {
     wrong("uniform = [-1, 1]", {ErrorCode::missing_key, "c.toml:9:12", {"'seed'"}});
     wrong("uniform = [1, -1], seed = 1", {ErrorCode::bad_value, "c.toml:9:24", {"low <= high"}});
     wrong("uniform = [-1e308, 1e308], seed = 1", {ErrorCode::bad_value, "c.toml:9:24", {"finite"}});
-    wrong("uniform = [1], seed = 1", {ErrorCode::bad_value, "c.toml:9:24", {"holds 1 numbers"}});
+    wrong("uniform = [1], seed = 1", {ErrorCode::bad_value, "c.toml:9:24", {"holds 1 number;"}});
     wrong("uniform = [1, nan], seed = 1", {ErrorCode::bad_value, "c.toml:9:28", {"nan"}});
     wrong("uniform = 1, seed = 1", {ErrorCode::wrong_type, "c.toml:9:24", {"[low, high]"}});
     wrong("uniform = [0, 1], seed = -1", {ErrorCode::bad_value, "c.toml:9:39", {"-1"}});

@@ -94,17 +94,44 @@ class CommandLine(Cli):
         self.refused("show", "example", "heisenbreg", says="did you mean 'heisenberg'")
 
     def test_missing_words(self):
-        self.refused(says="subcommand is required")
-        self.refused("run", says="CASE is required")
-        self.refused("show", says="subcommand is required")
+        self.refused(says="missing after 'chainmark'; there are: run, show")
+        self.refused("run", says="CASE is missing; expected a file")
+        self.refused("show", says="missing after 'show'; there are: families, ")
+        self.refused("show", "plan", says="CASE is missing; expected a file")
+        self.refused("show", "example", says="FAMILY is missing; expected a family")
+
+    def test_missing_and_repeated_values_of_options(self):
+        ring = self.write("ring.toml", RING)
+        for option, form in [("--json", "FILE"), ("--csv", "FILE"), ("--set", "KEY=VALUE"),
+                             ("--only", "GLOB"), ("--threads", "N"), ("--memory", "GiB")]:
+            self.refused("run", ring, option, says=f"{option} has no value; expected .*{form}")
+            self.refused("run", ring, option, "--quiet", says=f"{option}: '--quiet' (looks|is not)")
+        self.refused("run", ring, "--set", "sites=6", "--set", says="--set has no value")
+        self.refused("run", ring, "--threads", "1", "--threads", "2", says="--threads is given 2")
+        self.refused("show", "plan", ring, "--set", says="--set has no value")
 
     def test_bad_values_of_options(self):
         ring = self.write("ring.toml", RING)
         for option, value in [("--threads", "0"), ("--threads", "-3"), ("--threads", "many"),
                               ("--memory", "0"), ("--memory", "nan"), ("--memory", "-1"),
-                              ("--memory", "inf"), ("--set", "sites"), ("--set", "=3"),
+                              ("--threads", "010x"), ("--threads", "2.5"), ("--memory", "inf"),
+                              ("--memory", "4GB"), ("--set", "sites"), ("--set", "=3"),
                               ("--set", "sites="), ("--set", "nothing=3")]:
             self.refused("run", ring, option, value, says=option)
+        self.refused("run", ring, "--threads", "x",
+                     says="--threads: 'x' is not a whole number from 1 to 4096")
+        self.refused("run", ring, "--memory", "x",
+                     says="--memory: 'x' is not a number of GiB above 0")
+        done = self.call("run", ring, "--threads", "010", "--memory", "0.5", "--json", "-", code=0)
+        provenance = json.loads(done.stdout)["provenance"]
+        self.assertEqual((provenance["threads"], provenance["memory_gib"]), (10, 0.5))
+
+    def test_an_option_leaves_the_case_alone(self):
+        ring = self.write("ring.toml", RING)
+        done = self.call("run", "--set", "sites=6", ring, "--json", "-", code=0)
+        self.assertEqual([c["case"] for c in json.loads(done.stdout)["cases"]], [ring])
+        self.assertIn("ring of 7", self.call("show", "terms", "--set", "sites=7", ring,
+                                             code=0).stdout)
 
     def test_only(self):
         ring = self.write("ring.toml", RING)
@@ -292,12 +319,27 @@ class Show(Cli):
     def test_what_is_made_of_a_case(self):
         ring = self.write("ring.toml", RING)
         terms = self.call("show", "terms", ring, code=0).stdout
-        self.assertRegex(terms, r"ring of 6 sites, J = 1, h = 0\.1")
+        self.assertIn("ring of 6 sites, J = 1, h = 0.1 (the first of 2 points of this size)\n",
+                      terms)
         self.assertRegex(terms, r"0\.5 +S\+_0 S-_1\n")
         self.assertIn("ring of 8 sites", terms)
         self.assertIn("translation", self.call("show", "symmetries", ring, code=0).stdout)
         self.assertIn("sector", self.call("show", "plan", ring, code=0).stdout)
         self.refused("show", "terms", self.path("none.toml"), says="none.toml")
+
+    def test_settings_mean_what_they_mean_in_run(self):
+        ring = self.write("ring.toml", RING)
+        changes = ["--set", "sites=7", "--set", "h=0.25", "--set", "boundary=open"]
+        terms = self.call("show", "terms", ring, *changes, code=0).stdout
+        self.assertRegex(terms, r"open chain of 7 sites, J = 1, h = 0\.25\n")
+        symmetries = self.call("show", "symmetries", ring, *changes, code=0).stdout
+        self.assertRegex(symmetries, r"translation by one site +no ")
+        self.assertRegex(symmetries, r"h = 0\.25\n")
+        self.assertIn("7", self.call("show", "plan", ring, *changes, code=0).stdout)
+        for topic in ["plan", "terms", "symmetries"]:
+            self.refused("show", topic, ring, "--set", "sites", says="no KEY=VALUE")
+            self.refused("show", topic, ring, "--set", "site=7", says="did you mean 'sites'")
+        self.refused("show", "example", "xx", "--set", "sites=7", says="unknown option '--set'")
 
 
 class Interrupts(Cli):

@@ -106,15 +106,28 @@ TEST_CASE("a list that is not Hermitian is refused with the string") {
     CHECK(result.error().found.find("S+_0 S-_1") != std::string::npos);
 }
 
-TEST_CASE("what cancels is dropped, what does not is kept") {
+TEST_CASE("what cancels is dropped, a small rest of large numbers is kept") {
     TermCollector collector(five_ring);
-    for (const double coefficient : {0.1, 0.2, -0.3}) {
+    for (const double coefficient : {1e10, 0.1, -1e10}) {
         collector.add(coefficient, {{0, SiteMatrix::sz()}});
     }
-    collector.add(1e-12, {{1, SiteMatrix::sz()}});
+    for (const double coefficient : {0.7, -0.5, -0.2}) {
+        collector.add(coefficient, {{1, SiteMatrix::sz()}});
+    }
+    for (const double coefficient : {0.3, -0.3}) {
+        collector.add(coefficient, {{2, SiteMatrix::sz()}});
+    }
+    collector.add({1e-4, 1e12}, {{3, SiteMatrix::sz()}});
+    collector.add_conjugate({1e-4, 1e12}, {{3, SiteMatrix::sz()}});
     const TermList list = collector.finish().value();
-    REQUIRE(list.terms.size() == 1);
-    CHECK(list.terms[0].string == string_of({{1, z}}));
+    REQUIRE(list.terms.size() == 3);
+    CHECK(std::abs(list.terms[0].coefficient - 0.1) < 1e-9);  // 1e10 * 2^-64
+    // the doubles 0.7 - 0.5 - 0.2 do not cancel: what is left is theirs, exactly
+    CHECK(
+        list.terms[1].coefficient.real() ==
+        static_cast<double>(static_cast<long double>(0.7) - 0.5L - static_cast<long double>(0.2)));
+    CHECK(list.terms[2].string == string_of({{3, z}}));
+    CHECK(list.terms[2].coefficient == 2e-4);
 }
 
 TEST_CASE("a uniform field is split off only where it is the same on every site") {

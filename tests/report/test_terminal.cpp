@@ -109,8 +109,8 @@ TEST_CASE("routes without an answer are named once where that matters") {
     answered.not_run = {{RouteId::dense, "not shown", false},
                         {RouteId::fermion, "level on the edge", true}};
     const std::string text = run_text(run.report, {});
-    contains(text, "    no answer from dense (2 of 3 points): more than 12 sites\n");
-    contains(text, "    no answer from fermion (1 of 3 points): level on the edge\n");
+    contains(text, "    without dense at 2 of 3 points: more than 12 sites\n");
+    contains(text, "    without fermion at 1 of 3 points: level on the edge\n");
     CHECK(text.find("not shown") == std::string::npos);
 }
 
