@@ -65,7 +65,7 @@ void count_block(std::vector<std::pair<std::string, int>>& blocks, const std::st
 std::string size_text(double bytes) {
     constexpr double kibi = 1024.0;
     if (bytes < kibi * kibi) {
-        return fmt::format("{:.2g} KiB", std::max(bytes, 1.0) / kibi);
+        return fmt::format("{:.3g} KiB", std::max(bytes, 1.0) / kibi);
     }
     return bytes < 1000 * kibi * kibi ? fmt::format("{:.3g} MiB", bytes / kibi / kibi)
                                       : fmt::format("{:.2g} GiB", bytes / kibi / kibi / kibi);
