@@ -137,6 +137,32 @@ Error coinciding(const std::set<int>& sites, const PlacedTerm& term, const Chain
             "\"add\" (both count) or \"once\" (each set of sites counts once)"};
 }
 
+/// One placement of a term.
+struct Placement {
+    std::vector<PlacedMatrix> product;
+    std::set<int> sites;  ///< with those past the end of a ring brought back
+};
+
+Placement placed_at(const PlacedTerm& term, int first, const Chain& chain) {
+    Placement placement;
+    for (std::size_t i = 0; i < term.factors.size(); ++i) {
+        const int site = first + term.offsets[i];
+        placement.product.push_back({site, term.factors[i]});
+        placement.sites.insert(chain.is_infinite() ? site : site % chain.length());
+    }
+    return placement;
+}
+
+void collect(const PlacedTerm& term,
+             std::complex<double> coupling,
+             const Placement& placement,
+             TermCollector& collector) {
+    collector.add(coupling, placement.product);
+    if (term.add_conjugate) {
+        collector.add_conjugate(coupling, placement.product);
+    }
+}
+
 }  // namespace
 
 std::span<const Family> families() {
@@ -170,30 +196,18 @@ Result<TermList> build_terms(const Chain& chain,
             return tl::unexpected(short_chain(term, chain));
         }
         const int count = placement_count(term, chain, cell);
-        CHAINMARK_EXPECTS(term.coupling.size() == 1 ||
-                          term.coupling.size() == static_cast<std::size_t>(count));
+        const bool one_for_all = term.coupling.size() == 1;
+        CHAINMARK_EXPECTS(one_for_all || term.coupling.size() == static_cast<std::size_t>(count));
         std::set<std::set<int>> seen;
         for (int first = 0; first < count; ++first) {
-            std::vector<PlacedMatrix> product;
-            std::set<int> sites;
-            for (std::size_t i = 0; i < term.factors.size(); ++i) {
-                const int site = first + term.offsets[i];
-                product.push_back({site, term.factors[i]});
-                sites.insert(chain.is_infinite() ? site : site % chain.length());
+            const Placement placement = placed_at(term, first, chain);
+            const bool meets = !seen.insert(placement.sites).second;
+            if (meets && coincident == Coincident::refuse) {
+                return tl::unexpected(coinciding(placement.sites, term, chain));
             }
-            if (!seen.insert(sites).second) {
-                if (coincident == Coincident::refuse) {
-                    return tl::unexpected(coinciding(sites, term, chain));
-                }
-                if (coincident == Coincident::once) {
-                    continue;
-                }
-            }
-            const std::complex<double> coupling =
-                term.coupling[term.coupling.size() == 1 ? 0 : static_cast<std::size_t>(first)];
-            collector.add(coupling, product);
-            if (term.add_conjugate) {
-                collector.add_conjugate(coupling, product);
+            if (!meets || coincident == Coincident::add) {
+                const std::size_t index = one_for_all ? 0 : static_cast<std::size_t>(first);
+                collect(term, term.coupling[index], placement, collector);
             }
         }
     }

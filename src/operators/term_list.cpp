@@ -225,8 +225,9 @@ Result<TermList> TermCollector::finish() const {
         }
         // The two halves of a conjugate pair are averaged so that H is Hermitian to the last bit.
         const Wide mean = (sum.value + mirrored) / 2.0L;
-        const auto rounded = [&](long double part) {
-            return std::abs(part) <= cancelled * sum.weight ? 0.0 : static_cast<double>(part);
+        const long double noise = cancelled * sum.weight;
+        const auto rounded = [noise](long double part) {
+            return std::abs(part) <= noise ? 0.0 : static_cast<double>(part);
         };
         const Complex value(rounded(mean.real()), rounded(mean.imag()));
         if (string.empty()) {

@@ -135,7 +135,7 @@ std::string describe(const Job& job) {
 void work_through(const std::shared_ptr<State>& state,
                   const std::shared_ptr<const std::vector<const Job*>>& jobs,
                   const std::shared_ptr<std::atomic<std::size_t>>& next,
-                  Context context) {
+                  const Context& context) {
     try {
         for (std::size_t i = (*next)++; i < jobs->size(); i = (*next)++) {
             poll(context);

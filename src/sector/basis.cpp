@@ -21,10 +21,11 @@ std::vector<SectorLabel> sectors_of(Conserved conserved, int length) {
 }
 
 double largest_sector(Conserved conserved, int length) {
+    const int half = length / 2;
     switch (conserved) {
         case Conserved::up_count:  // C(L, L/2)
-            return std::exp(std::lgamma(length + 1.0) - std::lgamma(length / 2 + 1.0) -
-                            std::lgamma(length - length / 2 + 1.0));
+            return std::exp(std::lgamma(length + 1.0) - std::lgamma(half + 1.0) -
+                            std::lgamma(length - half + 1.0));
         case Conserved::parity:
             return std::pow(2.0, length - 1);
         case Conserved::nothing:
