@@ -49,11 +49,13 @@ struct Range {
     double to = 0.0;
 };
 
-Values too_many(Reader& reader, const Node& node, const std::string& what) {
-    reader.report(ErrorCode::grid_too_large,
-                  node.at,
-                  fmt::format("{} has more than {} values", what, longest_axis),
-                  "take fewer");
+Values too_many(Reader& reader, const Node& node, const std::string& what, double count) {
+    reader.report(
+        ErrorCode::grid_too_large,
+        node.at,
+        fmt::format(
+            "{} has {:.0f} values; more than {} points are refused", what, count, longest_axis),
+        "take a shorter range or a larger step, or split it over several runs");
     return std::nullopt;
 }
 
@@ -93,7 +95,7 @@ Values read_stepped(Reader& reader,
     constexpr double slack = 1e-9;
     const double steps = (range.to - range.from) / *step + slack;
     if (steps >= longest_axis) {
-        return too_many(reader, node, what);
+        return too_many(reader, node, what, std::floor(steps) + 1);
     }
     std::vector<double> numbers;
     for (int i = 0; i <= static_cast<int>(steps); ++i) {
@@ -111,7 +113,7 @@ Values read_counted(Reader& reader,
     const std::string name = "'count' of " + what;
     const auto* wanted = std::get_if<std::int64_t>(&count_node.value);
     if (wanted != nullptr && *wanted > longest_axis) {
-        return too_many(reader, count_node, what);
+        return too_many(reader, count_node, what, static_cast<double>(*wanted));
     }
     const auto count = reader.whole(count_node, name, 1, longest_axis);
     if (!count) {
@@ -178,7 +180,7 @@ Values read_list(
         return std::nullopt;
     }
     if (list.size() > static_cast<std::size_t>(longest_axis)) {
-        return too_many(reader, node, what);
+        return too_many(reader, node, what, static_cast<double>(list.size()));
     }
     std::vector<GridValue> values;
     for (const Node& item : list) {
