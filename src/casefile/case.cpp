@@ -103,6 +103,11 @@ const GridAxis& Case::axis(const std::string& name_wanted) const {
     return *at;
 }
 
+bool Case::has_temperature() const {
+    return std::any_of(
+        axes.begin(), axes.end(), [](const GridAxis& axis) { return axis.name == "temperature"; });
+}
+
 Checked<Case> parse_case(const std::string& text,
                          const std::string& source,
                          const std::vector<Setting>& settings) {

@@ -20,7 +20,8 @@ namespace chainmark {
 
 /// One parameter of the grid with its values; a single value is an axis of length one.
 struct GridAxis {
-    std::string name;  ///< "sites", a family's parameter, "h", or a name from [parameters]
+    /// "sites", "temperature", a family's parameter, "h", or a name from [parameters]
+    std::string name;
     std::vector<double> values;  ///< for "sites" whole numbers, `infinite_sites` for "infinite"
     Place where;
 };
@@ -66,18 +67,24 @@ struct Case {
     std::string title;
     BoundaryKind boundary = BoundaryKind::ring;
     double twist = 0.0;
+    int two_s = 1;  ///< 2S
     Coincident coincident = Coincident::refuse;
     const Family* family = nullptr;  ///< nullptr: written terms alone
     std::vector<CaseTerm> terms;
-    std::vector<GridAxis> axes;  ///< in written order; always holds "sites", with a family also "h"
-    bool zip = false;            ///< walk lists together instead of taking their product
+    /// in written order; always holds "sites", with a family also "h"; "temperature" where T > 0
+    std::vector<GridAxis> axes;
+    bool zip = false;  ///< walk lists together instead of taking their product
     std::vector<CaseQuantity> quantities;
     Tolerance tolerance;
     std::vector<RouteId> routes;  ///< empty: every route that covers a quantity
     Place system_place;
     std::string effective;  ///< the case as TOML with every --set applied
 
+    /// The axis of that name, which the case must have.
     const GridAxis& axis(const std::string& name) const;
+
+    /// Whether thermal averages are asked for, at every point; otherwise the ground state's.
+    bool has_temperature() const;
 };
 
 /// A KEY=VALUE from the command line: KEY is "sites", a parameter's name or a dotted path such as

@@ -10,13 +10,6 @@
 namespace chainmark {
 namespace {
 
-const WrittenAxis* find_axis(const Draft& draft, const std::string& name) {
-    const auto at = std::find_if(draft.axes.begin(),
-                                 draft.axes.end(),
-                                 [&](const WrittenAxis& axis) { return axis.name == name; });
-    return at == draft.axes.end() ? nullptr : &*at;
-}
-
 bool is_infinite(const GridValue& value) {
     return std::isinf(value.value);
 }
@@ -47,6 +40,25 @@ void check_ring(Reader& reader, const Draft& draft, const GridValue& sites) {
                       fmt::format("take at least {} sites, or say [system] coincident = \"add\" "
                                   "(both count) or \"once\" (each set of sites counts once)",
                                   result.family->smallest_ring));
+    }
+}
+
+/// Reports the first size at which the family does not exist: the others have the same reason.
+void check_family(Reader& reader, const Draft& draft, const WrittenAxis& sites) {
+    const Case& result = draft.result;
+    for (const GridValue& value : sites.values) {
+        if (result.family == nullptr || (!is_infinite(value) && value.value < 1)) {
+            continue;
+        }
+        Chain chain{
+            .sites = {}, .boundary = result.boundary, .twist = result.twist, .two_s = result.two_s};
+        if (!is_infinite(value)) {
+            chain.sites = static_cast<int>(value.value);
+        }
+        if (const auto obstacle = family_obstacle(*result.family, chain)) {
+            reader.report(obstacle->code, value.at, obstacle->found, obstacle->allowed);
+            return;
+        }
     }
 }
 
@@ -110,7 +122,9 @@ void check_list(Reader& reader,
         if (is_infinite(value)) {
             continue;
         }
-        const Chain chain = {static_cast<int>(value.value), draft.result.boundary};
+        const Chain chain = {.sites = static_cast<int>(value.value),
+                             .boundary = draft.result.boundary,
+                             .two_s = draft.result.two_s};
         const int count = placement_count(placed, chain, 1);
         if (numbers->size() != static_cast<std::size_t>(count)) {
             reader.report(ErrorCode::bad_value,
@@ -174,52 +188,6 @@ void check_terms(Reader& reader, const Draft& draft, const WrittenAxis* sites, b
     }
 }
 
-void check_meaning(Reader& reader, const QuantitySpec& spec, const Position& at, bool infinite) {
-    if (infinite && spec.where == Where::finite) {
-        reader.report(ErrorCode::bad_value,
-                      at,
-                      fmt::format("'{}' has no meaning at sites = \"infinite\"", spec.name),
-                      spec.on_infinite.empty()
-                          ? "take \"infinite\" out of sites, or the quantity out of this case"
-                          : fmt::format("ask for '{}'", spec.on_infinite));
-    } else if (!infinite && spec.where == Where::infinite) {
-        reader.report(ErrorCode::bad_value,
-                      at,
-                      fmt::format("'{}' exists only for the infinite chain", spec.name),
-                      "add \"infinite\" to sites");
-    }
-}
-
-/// Sites, distances and counts against the shortest chain.
-void check_extent(Reader& reader, const Query& query, const Position& at, int shortest) {
-    int farthest = 0;
-    for (const int distance : query.options.distance) {
-        farthest = std::max(farthest, distance);
-    }
-    for (const auto& [i, j] : query.options.pairs) {
-        farthest = std::max({farthest, i, j});
-    }
-    const std::string length = counted(static_cast<std::size_t>(shortest), "site");
-    if (farthest >= shortest) {
-        reader.report(
-            ErrorCode::bad_value,
-            at,
-            fmt::format("'{}' reaches to {} in a chain of {}", query.label, farthest, length),
-            fmt::format("sites and distances go from 0 to {}", shortest - 1));
-    }
-    constexpr int most_bits = 30;
-    if (shortest < most_bits && query.options.count > (1 << shortest)) {
-        reader.report(ErrorCode::bad_value,
-                      at,
-                      fmt::format("'{}' asks for {} levels, but a chain of {} has {}",
-                                  query.label,
-                                  query.options.count,
-                                  length,
-                                  1 << shortest),
-                      "take fewer levels or a longer chain");
-    }
-}
-
 void check_labels(Reader& reader, const Draft& draft) {
     std::map<std::string, int> seen;
     for (std::size_t i = 0; i < draft.result.quantities.size(); ++i) {
@@ -239,21 +207,14 @@ void check_labels(Reader& reader, const Draft& draft) {
     }
 }
 
-void check_quantities(Reader& reader, const Draft& draft, const WrittenAxis& sites, bool infinite) {
-    double shortest = infinite_sites;
-    for (const GridValue& value : sites.values) {
-        shortest = std::min(shortest, value.value);
-    }
-    for (std::size_t i = 0; i < draft.result.quantities.size(); ++i) {
-        const Query& query = draft.result.quantities[i].query;
-        check_meaning(reader, *query.spec, draft.quantity_at[i], infinite);
-        if (!std::isinf(shortest)) {
-            check_extent(reader, query, draft.extent_at[i], static_cast<int>(shortest));
-        }
-    }
-}
-
 }  // namespace
+
+const WrittenAxis* find_axis(const Draft& draft, const std::string& name) {
+    const auto at = std::find_if(draft.axes.begin(),
+                                 draft.axes.end(),
+                                 [&](const WrittenAxis& axis) { return axis.name == name; });
+    return at == draft.axes.end() ? nullptr : &*at;
+}
 
 void check_case(Reader& reader, const Draft& draft) {
     const WrittenAxis* sites = find_axis(draft, "sites");
@@ -263,8 +224,9 @@ void check_case(Reader& reader, const Draft& draft) {
         for (const GridValue& value : sites->values) {
             check_ring(reader, draft, value);
         }
-        check_quantities(reader, draft, *sites, infinite);
+        check_family(reader, draft, *sites);
     }
+    check_quantities(reader, draft);
     check_terms(reader, draft, sites, infinite);
     check_labels(reader, draft);
     if (draft.result.zip) {

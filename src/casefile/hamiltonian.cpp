@@ -55,7 +55,7 @@ void read_parameters(Reader& reader, const Table& root, Draft& draft) {
         draft.terms_complete = false;
         return;
     }
-    std::vector<std::string> taken = {"sites", "h"};
+    std::vector<std::string> taken = {"sites", "temperature", "h"};
     if (draft.result.family != nullptr) {
         for (const std::string& name : parameter_names(*draft.result.family)) {
             taken.push_back(name);

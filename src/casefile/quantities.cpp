@@ -9,100 +9,12 @@ namespace chainmark {
 namespace {
 
 const std::string owner = "[[quantity]]";
-constexpr int farthest = 1000000;
-
-std::optional<int> read_place(Reader& reader, const Node& node, const std::string& what) {
-    const auto place = reader.whole(node, what, 0, farthest);
-    return place ? std::optional(static_cast<int>(*place)) : std::nullopt;
-}
-
-void read_distance(Reader& reader, const Node& node, Options& options) {
-    const std::string what = name_in("distance", owner);
-    if (!std::holds_alternative<List>(node.value)) {
-        if (const auto distance = read_place(reader, node, what)) {
-            options.distance = {*distance};
-        }
-        return;
-    }
-    const List* list = reader.list(node, what, "a whole number or a list of them");
-    if (list == nullptr) {
-        return;
-    }
-    for (const Node& item : *list) {
-        if (const auto distance = read_place(reader, item, "an element of " + what)) {
-            options.distance.push_back(*distance);
-        }
-    }
-}
-
-void read_pairs(Reader& reader, const Node& node, Options& options) {
-    const std::string what = name_in("pairs", owner);
-    const std::string form = "pairs of sites, such as [[0, 3], [1, 5]]";
-    const List* list = reader.list(node, what, form);
-    if (list == nullptr) {
-        return;
-    }
-    for (const Node& item : *list) {
-        const List* pair = reader.list(item, "an element of " + what, "two sites [i, j]");
-        if (pair == nullptr) {
-            continue;
-        }
-        if (pair->size() != 2) {
-            reader.report(
-                ErrorCode::bad_value,
-                item.at,
-                fmt::format("an element of {} holds {}", what, counted(pair->size(), "site")),
-                "expected two sites [i, j]");
-            continue;
-        }
-        const auto first = read_place(reader, pair->front(), "a site of " + what);
-        const auto second = read_place(reader, pair->back(), "a site of " + what);
-        if (first && second) {
-            options.pairs.emplace_back(*first, *second);
-        }
-    }
-}
-
-void read_option(Reader& reader, OptionId option, const Node& node, Options& options) {
-    const std::string what = name_in(to_string(option), owner);
-    switch (option) {
-        case OptionId::count:
-            options.count =
-                static_cast<int>(reader.whole(node, what, 1, farthest).value_or(options.count));
-            break;
-        case OptionId::axis:
-            if (const auto axis = reader.choice(node, what, {"x", "y", "z"})) {
-                options.axis = std::vector{Axis::x, Axis::y, Axis::z}[*axis];
-            }
-            break;
-        case OptionId::axes:
-            if (const std::string* axes = reader.text(node, what, "\"zz\"");
-                axes != nullptr && *axes != "zz") {
-                reader.bad_value(node, what, "\"zz\": this version has no other correlation");
-            }
-            break;
-        case OptionId::distance:
-            read_distance(reader, node, options);
-            break;
-        case OptionId::pairs:
-            read_pairs(reader, node, options);
-            break;
-        case OptionId::connected:
-            options.connected = reader.flag(node, what).value_or(false);
-            break;
-        case OptionId::parity:
-            if (const auto parity = reader.choice(node, what, {"even", "odd"})) {
-                options.parity = *parity == 0 ? Parity::even : Parity::odd;
-            }
-            break;
-    }
-}
 
 bool takes(const QuantitySpec& spec, OptionId option) {
     return std::find(spec.options.begin(), spec.options.end(), option) != spec.options.end();
 }
 
-/// `count` where it is taken, and exactly one of `distance` and `pairs`.
+/// `count` and `block` where they are taken, and exactly one of `distance` and `pairs`.
 void require_options(Reader& reader,
                      const Table& table,
                      const Position& at,
@@ -110,6 +22,10 @@ void require_options(Reader& reader,
     const std::string name = fmt::format("the quantity '{}'", spec.name);
     if (takes(spec, OptionId::count)) {
         reader.need(table, at, name, "count", "say how many, such as count = 4");
+    }
+    if (takes(spec, OptionId::block)) {
+        reader.need(
+            table, at, name, "block", "say which sites, such as block = 4 for the sites 0 ... 3");
     }
     if (!takes(spec, OptionId::distance)) {
         return;
@@ -180,7 +96,7 @@ void read_own_tolerance(Reader& reader,
 }
 
 Position extent_position(const Table& table, const Position& at) {
-    for (const char* key : {"distance", "pairs", "count"}) {
+    for (const char* key : {"distance", "pairs", "count", "block"}) {
         if (const Entry* entry = find(table, key)) {
             return entry->value.at;
         }
@@ -212,6 +128,8 @@ void read_quantity(Reader& reader, const Node& node, Draft& draft) {
     draft.result.quantities.push_back(std::move(quantity));
     draft.quantity_at.push_back(node.at);
     draft.extent_at.push_back(extent_position(*table, node.at));
+    const Entry* sector = find(*table, "sector");
+    draft.sector_at.push_back(sector == nullptr ? node.at : sector->value.at);
 }
 
 }  // namespace

@@ -24,6 +24,7 @@ struct WrittenAxis {
 struct Draft {
     Case result;
     std::vector<WrittenAxis> axes;
+    bool has_temperature = false;           ///< the key is there, readable or not
     std::vector<std::string> parameters;    ///< names from [parameters]
     std::set<std::string> used_parameters;  ///< those of them that a term names
     bool terms_complete = true;             ///< false: a term could not be read
@@ -31,6 +32,7 @@ struct Draft {
     std::vector<Position> coupling_at;      ///< parallel to result.terms
     std::vector<Position> quantity_at;      ///< parallel to result.quantities
     std::vector<Position> extent_at;        ///< ... of what must fit the chain in a quantity
+    std::vector<Position> sector_at;        ///< ... of a quantity's sector
 };
 
 /// Nothing is read where this fails: the meaning of every key depends on it.
@@ -51,6 +53,9 @@ void read_term(Reader& reader, const Node& node, Draft& draft);
 /// Every [[quantity]]; after [tolerance].
 void read_quantities(Reader& reader, const Table& root, Draft& draft);
 
+/// What an option of a [[quantity]] says, alone; whether it fits the chain is for check_case.
+void read_option(Reader& reader, OptionId option, const Node& node, Options& options);
+
 /// { absolute, relative }; what is absent keeps the value of `tolerance`.
 void read_tolerance(Reader& reader,
                     const Table& table,
@@ -64,8 +69,15 @@ const Table* find_section(Reader& reader, const Table& root, const std::string& 
 void read_axis(
     Reader& reader, const Entry& entry, const std::string& owner, GridKind kind, Draft& draft);
 
-/// What no table can see alone: rings too short, quantities without a meaning at the given sites,
-/// values that occur twice, names that clash.
+/// nullptr where the case has no such axis.
+const WrittenAxis* find_axis(const Draft& draft, const std::string& name);
+
+/// Quantities against the chain and the temperature: those without a meaning there, sites and
+/// counts out of range, sectors that the chain does not have.
+void check_quantities(Reader& reader, const Draft& draft);
+
+/// What no table can see alone: rings too short, values that occur twice, names that clash, and
+/// check_quantities.
 void check_case(Reader& reader, const Draft& draft);
 
 }  // namespace chainmark

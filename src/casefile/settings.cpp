@@ -36,7 +36,7 @@ struct Section {
 
 std::vector<Section> bare_names(const Words& parameters) {
     return {{"parameters", parameters},
-            {"system", {"sites", "boundary", "coincident", "spin"}},
+            {"system", {"sites", "boundary", "coincident", "spin", "temperature"}},
             {"hamiltonian", hamiltonian_names()},
             {"grid", {"combine"}},
             {"tolerance", {"absolute", "relative"}},

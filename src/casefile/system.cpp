@@ -1,9 +1,11 @@
 #include <algorithm>
+#include <cmath>
 
 #include <fmt/format.h>
 
 #include "chainmark/base/numerics.hpp"
 #include "chainmark/casefile/sections.hpp"
+#include "chainmark/operators/site_operator.hpp"
 
 namespace chainmark {
 namespace {
@@ -34,11 +36,52 @@ void read_boundary(Reader& reader, const Node& node, Draft& draft) {
     }
 }
 
-void read_spin(Reader& reader, const Node& node) {
+/// "1/2", "1", "3/2", ..., or the same as a number.
+void read_spin(Reader& reader, const Node& node, Draft& draft) {
     const std::string what = name_in("spin", "[system]");
-    const std::string* spin = reader.text(node, what, "the text \"1/2\"");
-    if (spin != nullptr && *spin != "1/2") {
-        reader.bad_value(node, what, "\"1/2\": this version has spin 1/2 only");
+    const bool is_number = std::holds_alternative<std::int64_t>(node.value) ||
+                           std::holds_alternative<double>(node.value);
+    if (is_number) {
+        const double two_s = 2 * reader.number(node, what).value_or(draft.result.two_s / 2.0);
+        if (two_s < 1 || two_s > largest_two_s || two_s != std::trunc(two_s)) {
+            reader.bad_value(node, what, "0.5, 1, 1.5 ... 7.5, or a text such as \"3/2\"");
+            return;
+        }
+        draft.result.two_s = static_cast<int>(two_s);
+        return;
+    }
+    std::vector<std::string> words;
+    for (int two_s = 1; two_s <= largest_two_s; ++two_s) {
+        words.push_back(spin_text(two_s));
+    }
+    if (const auto chosen = reader.choice(node, what, words, "the same as a number, such as 1.5")) {
+        draft.result.two_s = static_cast<int>(*chosen) + 1;
+    }
+}
+
+void read_temperature(Reader& reader, const Entry& entry, Draft& draft) {
+    constexpr double largest = 1e100;  // as for couplings
+    draft.has_temperature = true;
+    const std::size_t before = draft.axes.size();
+    read_axis(reader, entry, "[system]", GridKind::real, draft);
+    if (draft.axes.size() == before) {
+        return;
+    }
+    for (const GridValue& temperature : draft.axes.back().values) {
+        if (temperature.value <= 0.0) {
+            reader.report(ErrorCode::bad_value,
+                          temperature.at,
+                          fmt::format("'temperature' has the value {}", temperature.value),
+                          "a temperature is above 0; for the ground state leave it out");
+            return;
+        }
+        if (temperature.value > largest || temperature.value < 1 / largest) {
+            reader.report(ErrorCode::bad_value,
+                          temperature.at,
+                          fmt::format("'temperature' has the value {}", temperature.value),
+                          "expected temperatures between 1e-100 and 1e100");
+            return;
+        }
     }
 }
 
@@ -103,7 +146,8 @@ void read_system(Reader& reader, const Table& root, Draft& draft) {
     if (table == nullptr) {
         return;
     }
-    reader.only_keys(*table, "[system]", {"sites", "boundary", "spin", "coincident"});
+    reader.only_keys(
+        *table, "[system]", {"sites", "boundary", "spin", "temperature", "coincident"});
     if (const Entry* sites = reader.need(*table,
                                          system->at,
                                          "[system]",
@@ -115,7 +159,10 @@ void read_system(Reader& reader, const Table& root, Draft& draft) {
         read_boundary(reader, boundary->value, draft);
     }
     if (const Entry* spin = find(*table, "spin")) {
-        read_spin(reader, spin->value);
+        read_spin(reader, spin->value, draft);
+    }
+    if (const Entry* temperature = find(*table, "temperature")) {
+        read_temperature(reader, *temperature, draft);
     }
     if (const Entry* coincident = find(*table, "coincident")) {
         read_coincident(reader, coincident->value, draft);

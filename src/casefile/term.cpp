@@ -16,15 +16,15 @@ const std::string owner = "[[hamiltonian.term]]";
 
 struct NamedMatrix {
     std::string name;
-    SiteMatrix matrix;
+    SiteMatrix (*matrix)(int two_s);
 };
 
-const std::array<NamedMatrix, 6> site_operators = {{{"Sx", SiteMatrix::sx()},
-                                                    {"Sy", SiteMatrix::sy()},
-                                                    {"Sz", SiteMatrix::sz()},
-                                                    {"S+", SiteMatrix::raising()},
-                                                    {"S-", SiteMatrix::lowering()},
-                                                    {"I", SiteMatrix::identity()}}};
+const std::array<NamedMatrix, 6> site_operators = {{{"Sx", SiteMatrix::sx},
+                                                    {"Sy", SiteMatrix::sy},
+                                                    {"Sz", SiteMatrix::sz},
+                                                    {"S+", SiteMatrix::raising},
+                                                    {"S-", SiteMatrix::lowering},
+                                                    {"I", SiteMatrix::identity}}};
 
 std::vector<std::string> operator_names() {
     std::vector<std::string> names;
@@ -47,7 +47,7 @@ std::optional<int> exponent_of(const std::string& text, std::size_t caret) {
     return valid && exponent >= 1 && exponent <= highest ? std::optional(exponent) : std::nullopt;
 }
 
-std::optional<SiteMatrix> read_operator(Reader& reader, const Node& node) {
+std::optional<SiteMatrix> read_operator(Reader& reader, const Node& node, int two_s) {
     const std::string what = "an operator of " + owner;
     const std::string* text = reader.text(node, what, "a text such as \"Sx\" or \"Sz^2\"");
     if (text == nullptr) {
@@ -70,14 +70,16 @@ std::optional<SiteMatrix> read_operator(Reader& reader, const Node& node) {
         reader.bad_value(node, what, "a power from 1 to 20, such as Sz^2");
         return std::nullopt;
     }
-    SiteMatrix power = at->matrix;
+    const SiteMatrix base = at->matrix(two_s);
+    SiteMatrix power = base;
     for (int i = 1; i < *exponent; ++i) {
-        power = power * at->matrix;
+        power = power * base;
     }
     return power;
 }
 
-bool read_operators(Reader& reader, const Table& table, const Position& at, CaseTerm& term) {
+bool read_operators(
+    Reader& reader, const Table& table, const Position& at, int two_s, CaseTerm& term) {
     const std::string form = "a list of operators, such as [\"S+\", \"S-\"]";
     const Entry* entry = reader.need(table, at, owner, "operators", "expected " + form);
     const List* list =
@@ -86,7 +88,7 @@ bool read_operators(Reader& reader, const Table& table, const Position& at, Case
         return false;
     }
     for (const Node& node : *list) {
-        if (const auto matrix = read_operator(reader, node)) {
+        if (const auto matrix = read_operator(reader, node, two_s)) {
             term.factors.push_back(*matrix);
         }
     }
@@ -328,7 +330,7 @@ void read_term(Reader& reader, const Node& node, Draft& draft) {
     reader.only_keys(*table, owner, {"operators", "offsets", "sites", "coupling", "add_conjugate"});
     CaseTerm term;
     term.where = reader.place(node.at);
-    const bool operators = read_operators(reader, *table, node.at, term);
+    const bool operators = read_operators(reader, *table, node.at, draft.result.two_s, term);
     const bool places = read_places(reader, *table, node.at, term);
     if (operators && places) {
         same_length(reader, node.at, term);

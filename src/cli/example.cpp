@@ -13,7 +13,7 @@ namespace {
 /// Values inside the interesting phases; 1 for any other parameter.
 double example_value(const std::string& parameter) {
     static const std::map<std::string, double> values = {
-        {"gamma", 0.5}, {"Delta", 0.5}, {"delta", 0.3}, {"J2", 0.5}};
+        {"gamma", 0.5}, {"Delta", 0.5}, {"delta", 0.3}, {"theta", 0.3}, {"J2", 0.5}};
     const auto at = values.find(parameter);
     return at == values.end() ? 1.0 : at->second;
 }
@@ -41,15 +41,19 @@ Checked<std::string> example_case(const std::string& family_name) {
                                   example_value(parameter.name),
                                   parameter.sentence);
     }
+    const std::string spin =
+        family->two_s ? fmt::format("spin     = \"{}\"\n", spin_text(*family->two_s)) : "";
+    // So many that the full matrix is still small: 3^6 states of spin 1, 2^8 of spin 1/2.
+    const int sites = family->two_s.value_or(1) > 1 ? 6 : 8;
     return fmt::format(R"(# H = {formula}
 # {remark}
 format = 1
-title  = "{name}: eight sites in a field"
+title  = "{name}: {sites} sites in a field"
 
 [system]
-sites    = 8  # a number, a list, "infinite", or {{ from = 4, to = 12, step = 2 }}
+sites    = {sites}  # a number, a list, "infinite", or {{ from = 4, to = 12, step = 2 }}
 boundary = "periodic"
-
+{spin}
 [hamiltonian]
 family = "{name}"
 {parameters}h      = {{ from = 0.0, to = 1.0, count = 5 }}  # uniform field
@@ -71,6 +75,8 @@ distance = [1, 2]
                        fmt::arg("formula", family->formula),
                        fmt::arg("remark", family->remark),
                        fmt::arg("name", family->name),
+                       fmt::arg("spin", spin),
+                       fmt::arg("sites", sites),
                        fmt::arg("parameters", parameters));
 }
 

@@ -32,6 +32,7 @@ Json families_json() {
         list.push_back({{"name", family.name},
                         {"formula", family.formula},
                         {"remark", family.remark},
+                        {"needs", family_needs(family)},
                         {"parameters", std::move(parameters)}});
     }
     return list;
@@ -44,8 +45,12 @@ std::string families_text() {
         for (const FamilyParameter& parameter : family.parameters) {
             parameters.push_back(parameter.name + " (" + parameter.sentence + ")");
         }
-        entries.push_back(
-            {family.name, {family.formula, family.remark, "parameters: " + join(parameters)}});
+        std::vector<std::string> lines = {
+            family.formula, family.remark, "parameters: " + join(parameters)};
+        if (!family_needs(family).empty()) {
+            lines.push_back("needs: " + family_needs(family));
+        }
+        entries.push_back({family.name, std::move(lines)});
     }
     return definition_list(entries) + "All take the uniform field h besides, 0 by default.\n";
 }
@@ -64,6 +69,7 @@ Json quantities_json() {
         list.push_back({{"name", spec.name},
                         {"sentence", spec.sentence},
                         {"where", to_string(spec.where)},
+                        {"when", to_string(spec.when)},
                         {"options", option_keys(spec)}});
     }
     return list;
@@ -75,6 +81,9 @@ std::string quantities_text() {
         std::vector<std::string> lines = {spec.sentence};
         lines.push_back(spec.where == Where::both ? "finite and infinite chains"
                                                   : to_string(spec.where) + " chains");
+        lines.back() += spec.when == When::thermal  ? "; needs a temperature"
+                        : spec.when == When::either ? "; ground state, or with a temperature"
+                                                    : "; ground state";
         if (!spec.options.empty()) {
             lines.back() += "; options: " + join(option_keys(spec));
         }

@@ -84,7 +84,7 @@ std::string terms_text(const Case& c, const BuiltPoint& point) {
         const Term& term = list.terms[i];
         table.add_row({{term.coefficient.imag() == 0.0 ? number_text(term.coefficient.real())
                                                        : number_text(term.coefficient)},
-                       {to_string(term.string)}});
+                       {to_string(term.string, problem.chain.two_s)}});
     }
     if (shown < list.terms.size()) {
         table.add_text(fmt::format("  ... {} more\n", list.terms.size() - shown));

@@ -11,20 +11,6 @@
 namespace chainmark::dense {
 namespace {
 
-/// sum_i |coefficient_i| ||string_i||: an upper bound of ||H|| and the scale of its rounding, also
-/// where contributions cancel.
-double weight_of(const std::vector<Term>& terms) {
-    double weight = 0.0;
-    for (const Term& term : terms) {
-        double norm = std::abs(term.coefficient);
-        for (const SiteFactor& factor : term.string) {
-            norm *= factor.op == SiteOperator::z ? 0.5 : 1.0;
-        }
-        weight += norm;
-    }
-    return weight;
-}
-
 /// [H, M]_{ab} = H_ab (M_b - M_a)
 template <class Scalar>
 bool commutes(const FullMatrix<Scalar>& matrix, const Eigen::VectorXd& total_sz) {
@@ -50,26 +36,51 @@ double real_part(std::complex<double> x) {
     return x.real();
 }
 
+Eigen::MatrixXcd widened(const Eigen::MatrixXd& matrix) {
+    return matrix.cast<std::complex<double>>();
+}
+const Eigen::MatrixXcd& widened(const Eigen::MatrixXcd& matrix) {
+    return matrix;
+}
+
+Eigen::MatrixXcd apply(const FullOperator& a, const Eigen::MatrixXd& states) {
+    Eigen::MatrixXcd image(states.rows(), states.cols());
+    image.real() = a.real * states;
+    image.imag() = a.imaginary * states;
+    return image;
+}
+
+Eigen::MatrixXcd apply(const FullOperator& a, const Eigen::MatrixXcd& states) {
+    Eigen::MatrixXcd image = a.real * states;
+    if (a.imaginary.nonZeros() > 0) {
+        image += std::complex<double>(0.0, 1.0) * (a.imaginary * states);
+    }
+    return image;
+}
+
 }  // namespace
 
 template <class Scalar>
 FullSpectrum<Scalar>::FullSpectrum(const Problem& problem, const Context& context)
-    : length_(problem.chain.length()), total_sz_(dense::total_sz(length_)) {
+    : length_(problem.chain.length()),
+      two_s_(problem.chain.two_s),
+      total_sz_(dense::total_sz(length_, two_s_)) {
     std::vector<Term> terms = problem.terms->terms;
-    FullMatrix<Scalar> hamiltonian = full_matrix<Scalar>(terms, length_);
+    FullMatrix<Scalar> hamiltonian = full_matrix<Scalar>(terms, length_, two_s_);
     poll(context);
     commutes_ = commutes(hamiltonian, total_sz_);
     if (!commutes_) {
         terms = full_terms(problem).terms;
-        hamiltonian = full_matrix<Scalar>(terms, length_);
+        hamiltonian = full_matrix<Scalar>(terms, length_, two_s_);
     }
-    const double weight = weight_of(terms);
-    const double noise = static_cast<double>(terms.size() + 2) * epsilon / 2 * weight;
-    const double lift = weight > 0 ? 2.5 * weight : 1.0;
-    solve(hamiltonian, commutes_ ? lift : 0.0, noise);
+    const MatrixScale scale = scale_of(terms, length_, two_s_);
+    const double lift = scale.weight > 0 ? 2.5 * scale.weight : 1.0;
+    solve(hamiltonian, commutes_ ? lift : 0.0, scale.noise);
     energies_.array() += problem.terms->constant;
     constant_rounding_ = epsilon * std::abs(problem.terms->constant);
     bounds_.array() += constant_rounding_;
+    noise_of_matrix_ = scale.noise;
+    noise_ = scale.noise + constant_rounding_ + epsilon * energies_.cwiseAbs().maxCoeff();
     poll(context);
 }
 
@@ -149,18 +160,61 @@ std::vector<SzMinimum> FullSpectrum<Scalar>::lowest_by_sz() const {
 }
 
 template <class Scalar>
-Eigen::MatrixXcd FullSpectrum<Scalar>::elements(const FullMatrix<Scalar>& a,
+Eigen::MatrixXcd FullSpectrum<Scalar>::elements(const FullOperator& a,
                                                 const std::vector<Eigen::Index>& of) const {
     const Eigen::Index n = static_cast<Eigen::Index>(of.size());
     const Vectors states = vectors_(Eigen::all, of);
-    const Vectors image = a * states;
+    const Eigen::MatrixXcd image = apply(a, states);
+    const Eigen::MatrixXcd& wide = widened(states);
     Eigen::MatrixXcd result(n, n);
     for (Eigen::Index i = 0; i < n; ++i) {
         for (Eigen::Index j = 0; j < n; ++j) {
-            result(i, j) = accurate_dot(column(states, i), column(image, j));
+            result(i, j) = accurate_dot(column(wide, i), column(image, j));
         }
     }
     return result;
+}
+
+template <class Scalar>
+Eigen::VectorXcd FullSpectrum<Scalar>::diagonal(const FullOperator& a,
+                                                const Context& context) const {
+    constexpr Eigen::Index at_a_time = 64;  // columns, to keep the copies small
+    Eigen::VectorXcd result(dim());
+    for (Eigen::Index first = 0; first < dim(); first += at_a_time) {
+        poll(context);
+        const Eigen::Index count = std::min(at_a_time, dim() - first);
+        const Vectors states = vectors_.middleCols(first, count);
+        const Eigen::MatrixXcd image = apply(a, states);
+        const Eigen::MatrixXcd& wide = widened(states);
+        for (Eigen::Index i = 0; i < count; ++i) {
+            result[first + i] = accurate_dot(column(wide, i), column(image, i));
+        }
+    }
+    return result;
+}
+
+template <class Scalar>
+Eigen::VectorXcd FullSpectrum<Scalar>::components(const Eigen::VectorXcd& x) const {
+    if constexpr (std::is_same_v<Scalar, double>) {
+        Eigen::VectorXcd result(dim());
+        result.real() = vectors_.transpose() * x.real();
+        result.imag() = vectors_.transpose() * x.imag();
+        return result;
+    } else {
+        return vectors_.adjoint() * x;
+    }
+}
+
+template <class Scalar>
+Eigen::VectorXcd FullSpectrum<Scalar>::combination(const Eigen::VectorXcd& c) const {
+    if constexpr (std::is_same_v<Scalar, double>) {
+        Eigen::VectorXcd result(dim());
+        result.real() = vectors_ * c.real();
+        result.imag() = vectors_ * c.imag();
+        return result;
+    } else {
+        return vectors_ * c;
+    }
 }
 
 template class FullSpectrum<double>;

@@ -28,28 +28,6 @@ Ground ground_of(std::vector<Level> levels, double window) {
     return ground;
 }
 
-std::vector<Term> site_operator(Axis axis, int site, double factor) {
-    const std::complex<double> half_i(0.0, 0.5 * factor);
-    const OperatorString plus = {{site, SiteOperator::plus}};
-    const OperatorString minus = {{site, SiteOperator::minus}};
-    switch (axis) {
-        case Axis::x:
-            return {{plus, factor / 2}, {minus, factor / 2}};
-        case Axis::y:  // (S+ - S-) / (2i)
-            return {{plus, -half_i}, {minus, half_i}};
-        case Axis::z:
-            break;
-    }
-    return {{{{site, SiteOperator::z}}, factor}};
-}
-
-Term zz(int i, int j, double factor) {
-    if (i == j) {
-        return {{}, factor / 4};
-    }
-    return {{{std::min(i, j), SiteOperator::z}, {std::max(i, j), SiteOperator::z}}, factor};
-}
-
 template <class Scalar>
 GroundAverages<Scalar>::GroundAverages(const Ground& ground, const FullSpectrum<Scalar>& spectrum)
     : spectrum_(spectrum), degeneracy_(ground.degeneracy) {
@@ -72,60 +50,47 @@ GroundAverages<Scalar>::GroundAverages(const Ground& ground, const FullSpectrum<
 }
 
 template <class Scalar>
-Average GroundAverages<Scalar>::trace_alone(const std::vector<Term>& terms, double norm) const {
+double GroundAverages<Scalar>::tilt() const {
+    const double nearest = gaps_.empty() ? 0.0 : gaps_.front();
+    return nearest > 0 ? std::min(1.0, residual_ / nearest) : 0.0;
+}
+
+template <class Scalar>
+Average GroundAverages<Scalar>::trace_alone(const FullOperator& a) const {
     Average average;
     for (std::size_t i = 0; i < degeneracy_; ++i) {
         average.value +=
-            elements(terms, {vectors_[i]})(0, 0).real() / static_cast<double>(degeneracy_);
+            spectrum_.elements(a, {vectors_[i]})(0, 0) / static_cast<double>(degeneracy_);
     }
-    const double tilt = gaps_.empty() ? 0.0 : residual_ / gaps_.front();
-    average.bound = norm * (2 * tilt + 32 * epsilon);
+    average.bound = a.norm * (2 * tilt() + 32 * epsilon);
     return average;
 }
 
 template <class Scalar>
-Average GroundAverages<Scalar>::of(const std::vector<Term>& terms) const {
-    double norm = 0.0;
-    for (const Term& term : terms) {
-        norm += std::abs(term.coefficient) * std::pow(0.5, term.string.size());
-    }
+Average GroundAverages<Scalar>::of(const FullOperator& a) const {
     if (degeneracy_ > largest_range_space) {
-        return trace_alone(terms, norm);
+        return trace_alone(a);
     }
     const auto dim = static_cast<Eigen::Index>(degeneracy_);
-    const Eigen::MatrixXcd block = elements(terms, vectors_);
+    const Eigen::MatrixXcd block = spectrum_.elements(a, vectors_);
     const Eigen::MatrixXcd inside = block.topLeftCorner(dim, dim);
     Average average;
-    average.value = inside.trace().real() / static_cast<double>(dim);
+    average.value = inside.trace() / static_cast<double>(dim);
     double tilt = rest_ > 0 ? residual_ / rest_ : 0.0;
-    average.bound = norm * (2 * tilt + 32 * epsilon);
+    average.bound = a.norm * (2 * tilt + 32 * epsilon);
     for (std::size_t n = 0; n < gaps_.size(); ++n) {
         const double towards = residual_ / gaps_[n];
-        const auto column = dim + static_cast<Eigen::Index>(n);
-        const double coupling = block.col(column).head(dim).norm() + 16 * epsilon * norm;
-        average.bound += 2 * coupling * towards;
+        const auto at = dim + static_cast<Eigen::Index>(n);
+        const double coupling =
+            block.col(at).head(dim).norm() + block.row(at).head(dim).norm() + 32 * epsilon * a.norm;
+        average.bound += coupling * towards;
         tilt += towards;
     }
-    average.bound += 2 * norm * tilt * tilt;
-    const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd> solver(inside, Eigen::EigenvaluesOnly);
+    average.bound += 2 * a.norm * tilt * tilt;
+    const Eigen::MatrixXcd hermitian = (inside + inside.adjoint()) / 2.0;
+    const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd> solver(hermitian, Eigen::EigenvaluesOnly);
     average.range = {solver.eigenvalues().minCoeff(), solver.eigenvalues().maxCoeff()};
     return average;
-}
-
-template <class Scalar>
-Eigen::MatrixXcd GroundAverages<Scalar>::elements(const std::vector<Term>& terms,
-                                                  const std::vector<Eigen::Index>& vectors) const {
-    // Sy is i times a real matrix, which the real vectors can be put to.
-    std::complex<double> phase = 1.0;
-    std::vector<Term> turned = terms;
-    if (std::is_same_v<Scalar, double> && !terms.empty() &&
-        terms.front().coefficient.real() == 0.0) {
-        phase = std::complex<double>(0.0, 1.0);
-        for (Term& term : turned) {
-            term.coefficient /= phase;
-        }
-    }
-    return phase * spectrum_.elements(full_matrix<Scalar>(turned, spectrum_.length()), vectors);
 }
 
 template class GroundAverages<double>;

@@ -1,11 +1,11 @@
 #pragma once
 
+#include <complex>
 #include <optional>
 #include <utility>
 #include <vector>
 
 #include "chainmark/dense/full_spectrum.hpp"
-#include "chainmark/reference/quantity.hpp"
 
 /// The ground space of a full spectrum, and averages over it.
 namespace chainmark::dense {
@@ -22,17 +22,12 @@ struct Ground {
 /// Sorts ascending levels into the ground space (within `window` of the lowest) and the rest.
 Ground ground_of(std::vector<Level> levels, double window);
 
-/// factor * S_site along an axis.
-std::vector<Term> site_operator(Axis axis, int site, double factor);
-
-/// factor * Sz_i Sz_j; for i = j that is factor / 4.
-Term zz(int i, int j, double factor);
-
-/// An average over the ground space.
+/// An average over the ground space, or a thermal one.
 struct Average {
-    double value = 0.0;
+    std::complex<double> value = 0.0;
     double bound = 0.0;
-    std::optional<std::pair<double, double>> range;  ///< extreme eigenvalues of P A P
+    std::optional<std::pair<double, double>>
+        range;  ///< ground spaces: extreme eigenvalues of P A P
 };
 
 template <class Scalar>
@@ -40,19 +35,20 @@ class GroundAverages {
 public:
     GroundAverages(const Ground& ground, const FullSpectrum<Scalar>& spectrum);
 
-    /// Tr(P A)/dim for A = sum of `terms`, of which every string stands for a product of spin
-    /// components (norm 1/2 each).
+    /// Tr(P A)/dim.
     ///
     /// Bound: the computed space is tilted from the exact one, towards a level at distance gap_n by
     /// at most residual/gap_n (Davis and Kahan, SIAM J. Numer. Anal. 7, 1 (1970)), which moves the
-    /// average by at most 2 |<0|A|n>| times that, plus 2 ||A|| times the square of the whole tilt.
-    /// So a level that lies close but that A does not connect (the other parity) costs no digits.
-    Average of(const std::vector<Term>& terms) const;
+    /// average by at most (|<0|A|n>| + |<n|A|0>|) times that, plus 2 ||A|| times the square of the
+    /// whole tilt. So a level that lies close but that A does not connect (the other parity) costs
+    /// no digits.
+    Average of(const FullOperator& a) const;
+
+    /// Bounds the sine of the angle between the computed space and the exact one.
+    double tilt() const;
 
 private:
-    Average trace_alone(const std::vector<Term>& terms, double norm) const;
-    Eigen::MatrixXcd elements(const std::vector<Term>& terms,
-                              const std::vector<Eigen::Index>& vectors) const;
+    Average trace_alone(const FullOperator& a) const;
 
     const FullSpectrum<Scalar>& spectrum_;
     std::vector<Eigen::Index> vectors_;  ///< of the ground space, then of a few levels above it

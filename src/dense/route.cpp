@@ -1,297 +1,174 @@
 #include "chainmark/dense/route.hpp"
 
-#include <algorithm>
 #include <cmath>
-#include <set>
 
 #include <fmt/format.h>
 
-#include "chainmark/base/numerics.hpp"
-#include "chainmark/dense/full_spectrum.hpp"
-#include "chainmark/dense/ground.hpp"
-#include "chainmark/dense/jumps.hpp"
+#include "chainmark/dense/ground_answers.hpp"
+#include "chainmark/dense/sector_answers.hpp"
+#include "chainmark/dense/thermal_answers.hpp"
 
 namespace chainmark {
 namespace {
 
 using namespace dense;
 
-constexpr int largest_length = 12;
+constexpr double largest_dim = 4096;
 
-template <class Scalar>
-class Evaluator {
-public:
-    Evaluator(const Problem& problem, const FullSpectrum<Scalar>& spectrum)
-        : problem_(problem),
-          spectrum_(spectrum),
-          ground_(ground_of(spectrum.levels(problem.field), ground_window(problem))) {}
-
-    Answer operator()(const Query& query) const {
-        switch (query.spec->id) {
-            case QuantityId::ground_energy:
-                return energy(1.0);
-            case QuantityId::ground_energy_per_site:
-                return energy(1.0 / spectrum_.length());
-            case QuantityId::levels:
-                return levels(static_cast<std::size_t>(query.options.count));
-            case QuantityId::spectrum:
-                return levels(ground_.levels.size());
-            case QuantityId::jump_fields:
-                return jump_fields();
-            default:
-                break;
-        }
-        if (ground_.straddles) {
-            return Undecided{"a level's error bound reaches over the edge of the ground space"};
-        }
-        switch (query.spec->id) {
-            case QuantityId::gap:
-                return gap();
-            case QuantityId::susceptibility:
-                return susceptibility();
-            case QuantityId::magnetization:
-                return expectation({mean_of(Axis::z)}, Value::number(0.0));
-            case QuantityId::local_magnetization:
-                return local_magnetization(query.options.axis);
-            default:
-                return spin_correlation(query.options);
-        }
+int largest_length(int two_s) {
+    int length = 0;
+    while (std::pow(two_s + 1.0, length + 1) <= largest_dim) {
+        ++length;
     }
-
-private:
-    Reference reference(Value value, std::vector<double> bound) const {
-        Reference result;
-        result.value = std::move(value);
-        result.bound = std::move(bound);
-        result.basis = Basis::residual;
-        if (!ground_.straddles) {
-            result.degeneracy = static_cast<std::int64_t>(ground_.degeneracy);
-        }
-        return result;
-    }
-
-    Answer energy(double factor) const {
-        const Level& lowest = ground_.levels.front();
-        const double value = lowest.energy * factor;
-        return reference(Value::number(value), {lowest.bound * factor + epsilon * std::abs(value)});
-    }
-
-    Answer levels(std::size_t count) const {
-        const std::size_t shown = std::min(count, ground_.levels.size());
-        std::vector<double> energies;
-        std::vector<double> bounds;
-        std::vector<Labels> labels;
-        for (std::size_t i = 0; i < shown; ++i) {
-            const Level& level = ground_.levels[i];
-            energies.push_back(level.energy);
-            bounds.push_back(level.bound);
-            if (spectrum_.field_commutes()) {
-                labels.push_back({.sz = spectrum_.sz(level.vector)});
-            }
-        }
-        Reference result = reference(Value::array(energies), std::move(bounds));
-        result.degeneracy.reset();
-        result.complete = Completeness::proved;
-        result.labels = std::move(labels);
-        return result;
-    }
-
-    Answer gap() const {
-        if (!ground_.has_next()) {
-            return reference(Value::status(Special::undefined), {0.0});
-        }
-        const double bound =
-            ground_.levels.front().bound + ground_.levels[ground_.degeneracy].bound;
-        return reference(Value::number(ground_.gap()), {bound + epsilon * ground_.gap()});
-    }
-
-    std::set<double> ground_sz() const {
-        std::set<double> values;
-        for (std::size_t i = 0; i < ground_.degeneracy; ++i) {
-            values.insert(spectrum_.sz(ground_.levels[i].vector));
-        }
-        return values;
-    }
-
-    Answer susceptibility() const {
-        const bool jump = ground_sz().size() > 1;
-        Reference result =
-            reference(jump ? Value::status(Special::jump) : Value::number(0.0), {0.0});
-        result.basis = Basis::exact;
-        return result;
-    }
-
-    Answer jump_fields() const {
-        std::vector<double> fields;
-        std::vector<double> bounds;
-        std::vector<double> steps = {-spectrum_.length() / 2.0};
-        const double window = ground_window({problem_.chain, problem_.terms, 0.0});
-        for (const Jump& jump : find_jumps(spectrum_.lowest_by_sz(), window)) {
-            fields.push_back(jump.field - problem_.field);
-            bounds.push_back(jump.bound + epsilon * std::abs(problem_.field));
-            steps.push_back(jump.above);
-        }
-        Reference result = reference(Value::array(fields), std::move(bounds));
-        result.value.total_sz = std::move(steps);
-        result.degeneracy.reset();
-        return result;
-    }
-
-    std::vector<Term> mean_of(Axis axis) const {
-        std::vector<Term> terms;
-        for (int site = 0; site < spectrum_.length(); ++site) {
-            for (Term& term : site_operator(axis, site, 1.0 / spectrum_.length())) {
-                terms.push_back(std::move(term));
-            }
-        }
-        return terms;
-    }
-
-    Answer local_magnetization(Axis axis) const {
-        std::vector<std::vector<Term>> operators;
-        for (int site = 0; site < spectrum_.length(); ++site) {
-            operators.push_back(site_operator(axis, site, 1.0));
-        }
-        return expectation(operators, Value::array(std::vector<double>(operators.size())));
-    }
-
-    /// For each entry of the answer the pairs of sites whose mean it is.
-    std::vector<std::vector<std::pair<int, int>>> correlated_pairs(const Options& options) const {
-        std::vector<std::vector<std::pair<int, int>>> entries;
-        for (const auto& pair : options.pairs) {
-            entries.push_back({pair});
-        }
-        const int length = spectrum_.length();
-        for (const int distance : options.distance) {
-            entries.emplace_back();
-            for (int i = 0; i < length; ++i) {
-                if (problem_.chain.is_ring() || i + distance < length) {
-                    entries.back().emplace_back(i, (i + distance) % length);
-                }
-            }
-        }
-        return entries;
-    }
-
-    Answer spin_correlation(const Options& options) const {
-        const auto entries = correlated_pairs(options);
-        std::vector<std::vector<Term>> operators;
-        for (const auto& pairs : entries) {
-            operators.emplace_back();
-            for (const auto& [i, j] : pairs) {
-                operators.back().push_back(zz(i, j, 1.0 / static_cast<double>(pairs.size())));
-            }
-        }
-        Answer answer = expectation(operators, Value::array(std::vector<double>(entries.size())));
-        if (options.connected) {
-            subtract_products(std::get<Reference>(answer), entries);
-        }
-        return answer;
-    }
-
-    void subtract_products(Reference& result,
-                           const std::vector<std::vector<std::pair<int, int>>>& entries) const {
-        const Reference local = std::get<Reference>(local_magnetization(Axis::z));
-        for (std::size_t e = 0; e < entries.size(); ++e) {
-            double product = 0.0;
-            double error = 0.0;
-            for (const auto& [i, j] : entries[e]) {
-                const auto a = static_cast<std::size_t>(i);
-                const auto b = static_cast<std::size_t>(j);
-                product += local.value.real_at(a) * local.value.real_at(b);
-                error += local.bound[a] + local.bound[b];
-            }
-            const double count = static_cast<double>(entries[e].size());
-            result.value.data[e] -= product / count;
-            result.bound[e] += error / count;
-        }
-        result.range.reset();
-    }
-
-    /// Ground-space averages of the operators, as entries of `shape`, with ranges.
-    Answer expectation(const std::vector<std::vector<Term>>& operators, Value shape) const {
-        const GroundAverages<Scalar> averages(ground_, spectrum_);
-        Range range;
-        std::vector<double> bounds;
-        for (std::size_t e = 0; e < operators.size(); ++e) {
-            const Average average = averages.of(operators[e]);
-            shape.data[e] = average.value;
-            bounds.push_back(average.bound);
-            if (average.range) {
-                range.push_back(*average.range);
-            }
-        }
-        Reference result = reference(std::move(shape), std::move(bounds));
-        if (range.size() == operators.size()) {
-            result.range = std::move(range);
-        }
-        return result;
-    }
-
-    const Problem& problem_;
-    const FullSpectrum<Scalar>& spectrum_;
-    Ground ground_;
-};
-
-bool covers(QuantityId id) {
-    switch (id) {
-        case QuantityId::mode_energies:
-        case QuantityId::fermi_momentum:
-        case QuantityId::phase:
-            return false;
-        default:
-            return true;
-    }
+    return length;
 }
 
-bool needs_conserved_sz(QuantityId id) {
-    return id == QuantityId::susceptibility || id == QuantityId::jump_fields;
+/// Why a query is beyond this route whatever the Hamiltonian; empty where it is not.
+std::string beyond(const Query& query, const Chain& chain, bool thermal) {
+    switch (query.spec->id) {
+        case QuantityId::mode_energies:
+            return "a quantity of free fermions";
+        case QuantityId::fermi_momentum:
+        case QuantityId::phase:
+            return "a quantity of the infinite chain";
+        case QuantityId::string_order:
+            if (chain.two_s % 2 == 1 && chain.two_s != 1) {
+                return "string order is defined for whole spins and for 1/2";
+            }
+            break;
+        default:
+            break;
+    }
+    if (thermal && query.spec->when == When::ground_state) {
+        return "a quantity of the ground state, without a temperature";
+    }
+    if (!thermal && query.spec->when == When::thermal) {
+        return "needs a temperature";
+    }
+    for (const int distance : query.options.distance) {
+        if (!chain.is_ring() && distance >= chain.length()) {
+            return fmt::format("no two sites are at a distance of {}", distance);
+        }
+    }
+    return "";
+}
+
+bool asks_for_kubo_response(const Batch& batch) {
+    for (const Query& query : batch.queries) {
+        if (query.spec->id == QuantityId::susceptibility) {
+            return batch.problems.front().temperature.has_value();
+        }
+    }
+    return false;
+}
+
+/// Rough time of one answer, without the diagonalization of the whole matrix of dimension n.
+double seconds_beside(const Query& query, const Problem& problem, double n) {
+    const double length = problem.chain.length();
+    if (query.options.sector) {
+        const Labels& labels = *query.options.sector;
+        const double sectors = (labels.sz       ? 3.0
+                                : labels.parity ? 2.0
+                                                : 1.0) *
+                               (labels.momentum ? length / 2 : 1.0) *
+                               (labels.reflection ? 2.0 : 1.0) * (labels.inversion ? 2.0 : 1.0);
+        return 1e-9 * std::pow(n / sectors, 3);
+    }
+    if (query.spec->id == QuantityId::structure_factor) {
+        return 2e-6 * n * length * length;
+    }
+    // averages are products of a sparse matrix with all vectors at a temperature, with few else
+    return problem.temperature ? 3e-8 * n * n : 1e-5 * n;
 }
 
 Coverage plan(const Batch& batch) {
     const Problem& first = batch.problems.front();
-    if (first.chain.is_infinite()) {
+    const Chain& chain = first.chain;
+    if (chain.is_infinite()) {
         return refuse_all(batch, "needs a finite chain");
     }
-    const int length = first.chain.length();
-    if (length > largest_length) {
-        return refuse_all(batch, fmt::format("takes at most {} sites", largest_length));
+    const int largest = largest_length(chain.two_s);
+    if (chain.length() > largest) {
+        const std::string spin = chain.two_s == 1 ? "" : " of spin " + spin_text(chain.two_s);
+        return refuse_all(batch, fmt::format("takes at most {} sites{}", largest, spin));
     }
     const bool conserved = conserves_sz(*first.terms);
     Coverage coverage = refuse_all(batch, "");
     for (std::size_t q = 0; q < batch.queries.size(); ++q) {
-        const QuantityId id = batch.queries[q].spec->id;
-        if (!covers(id)) {
-            coverage.refusal[q] = id == QuantityId::mode_energies
-                                      ? "a quantity of free fermions"
-                                      : "a quantity of the infinite chain";
-        } else if (needs_conserved_sz(id) && !conserved) {
+        const Query& query = batch.queries[q];
+        coverage.refusal[q] = beyond(query, chain, first.temperature.has_value());
+        if (coverage.refusal[q].empty() && query.spec->id == QuantityId::jump_fields &&
+            !conserved) {
             coverage.refusal[q] = "needs a Hamiltonian that conserves Sz";
         }
     }
-    const double n = std::pow(2.0, length);
+    const double n = std::pow(chain.site_dim(), chain.length());
     const bool real = is_real(*first.terms);
-    const double solves = conserved ? 1.0 : static_cast<double>(batch.problems.size());
-    coverage.seconds = solves * n * n * n * (real ? 1.3e-10 : 5e-10);
+    const double points = static_cast<double>(batch.problems.size());
+    const double solves = conserved ? 1.0 : points;
+    double products = solves;
+    if (!conserved && asks_for_kubo_response(batch)) {
+        products += solves;
+    }
+    coverage.seconds = products * n * n * n * (real ? 1.3e-10 : 5e-10);
+    for (const Query& query : batch.queries) {
+        coverage.seconds += points * seconds_beside(query, first, n);
+    }
     coverage.bytes = n * n * 16 * (real ? 4 : 8);
     return coverage;
 }
 
+/// Solves what is asked for, and keeps it while the next question needs the same.
 template <class Scalar>
-Answers evaluate_as(const Batch& batch, const Coverage& coverage, const Context& context) {
-    std::optional<FullSpectrum<Scalar>> spectrum;
-    std::size_t solved_for = batch.problems.size();
-    return answer_each(
-        RouteId::dense, batch, coverage, [&](std::size_t p, const Query& query) -> Answer {
-            const Problem& problem = batch.problems[p];
-            if (!spectrum || (!spectrum->field_commutes() && solved_for != p)) {
-                spectrum.emplace(problem, context);
-                solved_for = p;
-            }
-            poll(context);
-            return Evaluator<Scalar>(problem, *spectrum)(query);
-        });
-}
+class Evaluator {
+public:
+    Evaluator(const Batch& batch, const Context& context) : batch_(batch), context_(context) {}
+
+    Answer operator()(std::size_t p, const Query& query) {
+        poll(context_);
+        const Problem& problem = batch_.problems[p];
+        if (query.options.sector) {
+            return of_sector(p, query);
+        }
+        if (problem.temperature) {
+            return thermal_answer(problem, spectrum_of(p), magnetization_, query, context_);
+        }
+        return GroundAnswers<Scalar>(problem, spectrum_of(p))(query);
+    }
+
+private:
+    Answer of_sector(std::size_t p, const Query& query) {
+        const Problem& problem = batch_.problems[p];
+        const SectorSpectrum sector = sector_spectrum(problem, *query.options.sector, context_);
+        if (!sector.refusal.empty()) {
+            return NotCovered{sector.refusal};
+        }
+        switch (query.spec->id) {
+            case QuantityId::gap:
+                return sector_gap(sector, GroundAnswers<Scalar>(problem, spectrum_of(p)).lowest());
+            case QuantityId::entanglement_entropy:
+                return sector_entropy(sector, problem, query.options);
+            default:
+                return sector_levels(sector, query.options);
+        }
+    }
+
+    const FullSpectrum<Scalar>& spectrum_of(std::size_t p) {
+        if (!spectrum_ || (!spectrum_->field_commutes() &&
+                           batch_.problems[solved_for_].field != batch_.problems[p].field)) {
+            magnetization_.reset();
+            spectrum_.emplace(batch_.problems[p], context_);
+            solved_for_ = p;
+        }
+        return *spectrum_;
+    }
+
+    const Batch& batch_;
+    const Context& context_;
+    std::optional<FullSpectrum<Scalar>> spectrum_;
+    std::size_t solved_for_ = 0;
+    MagnetizationMatrix<Scalar> magnetization_;
+};
 
 Answers evaluate(const Batch& batch, const Context& context) {
     const Coverage coverage = plan(batch);
@@ -302,18 +179,21 @@ Answers evaluate(const Batch& batch, const Context& context) {
             });
     }
     return is_real(*batch.problems.front().terms)
-               ? evaluate_as<double>(batch, coverage, context)
-               : evaluate_as<std::complex<double>>(batch, coverage, context);
+               ? answer_each(RouteId::dense, batch, coverage, Evaluator<double>(batch, context))
+               : answer_each(RouteId::dense,
+                             batch,
+                             coverage,
+                             Evaluator<std::complex<double>>(batch, context));
 }
 
 }  // namespace
 
 const Route& dense_route() {
-    static const Route route{
-        RouteId::dense,
-        "the full 2^L matrix by Kronecker products, fully diagonalized, L <= 12",
-        plan,
-        evaluate};
+    static const Route route{RouteId::dense,
+                             "the full (2S+1)^L matrix by Kronecker products, fully diagonalized, "
+                             "up to dimension 4096: L <= 12 for S = 1/2, 7 for S = 1",
+                             plan,
+                             evaluate};
     return route;
 }
 

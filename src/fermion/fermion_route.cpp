@@ -5,6 +5,7 @@
 #include <fmt/format.h>
 
 #include "chainmark/fermion/point.hpp"
+#include "chainmark/fermion/reach.hpp"
 #include "chainmark/fermion/routes.hpp"
 
 namespace chainmark {
@@ -42,6 +43,9 @@ std::string pair_refusal(const Options& options, int length) {
 }
 
 std::string refusal(const Query& query, int length) {
+    if (std::string reason = fermion::beyond_free_fermions(query); !reason.empty()) {
+        return reason;
+    }
     switch (query.spec->id) {
         case QuantityId::spectrum:
             return length <= largest_spectrum
@@ -119,6 +123,9 @@ Coverage plan_fermion(const Batch& batch) {
     }
     if (problem.chain.length() < 1) {
         return refuse_all(batch, "needs at least one site");
+    }
+    if (problem.temperature) {
+        return refuse_all(batch, "temperatures are not covered by this route");
     }
     const auto form = fermion::recognise(problem.chain, *problem.terms);
     if (!form) {

@@ -87,6 +87,9 @@ long double ChainForm::wrap_deviation() const {
 }
 
 tl::expected<ChainForm, std::string> recognise(const Chain& chain, const TermList& terms) {
+    if (chain.two_s != 1) {
+        return tl::unexpected(std::string("needs spin 1/2"));
+    }
     const auto sites = static_cast<std::size_t>(chain.length());
     ChainForm form{.chain = chain,
                    .hop = std::vector<std::complex<double>>(sites - 1),

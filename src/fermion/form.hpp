@@ -43,8 +43,8 @@ struct ChainForm {
     long double wrap_deviation() const;
 };
 
-/// Finds the form in a term list on a finite chain, or says which string (the first in the list) is
-/// not of this kind, and why.
+/// Finds the form in a term list on a finite chain, or says why there is none: the spin is not 1/2,
+/// or which string (the first in the list) is not of this kind, and why.
 tl::expected<ChainForm, std::string> recognise(const Chain& chain, const TermList& terms);
 
 }  // namespace chainmark::fermion

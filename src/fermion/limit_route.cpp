@@ -4,6 +4,7 @@
 #include <fmt/format.h>
 
 #include "chainmark/fermion/answers.hpp"
+#include "chainmark/fermion/reach.hpp"
 #include "chainmark/fermion/routes.hpp"
 
 namespace chainmark {
@@ -50,6 +51,9 @@ struct Recognised {
 Recognised recognise(const Problem& problem) {
     if (!problem.chain.is_infinite()) {
         return {std::nullopt, "needs the infinite chain"};
+    }
+    if (problem.chain.two_s != 1) {
+        return {std::nullopt, "needs spin 1/2"};
     }
     if (problem.terms->cell != 1) {
         return {std::nullopt,
@@ -220,6 +224,15 @@ Reference answer(const XxChain& chain, const Query& query) {
     }
 }
 
+std::string refusal(const Query& query) {
+    const std::string& instead = query.spec->on_infinite;
+    if (query.spec->where != Where::finite) {
+        return fermion::beyond_free_fermions(query);
+    }
+    return instead.empty() ? "has no meaning on the infinite chain"
+                           : fmt::format("has no meaning on the infinite chain; {} has", instead);
+}
+
 Coverage plan_limit(const Batch& batch) {
     if (batch.problems.empty()) {
         return refuse_all(batch, "no problem was given");
@@ -228,15 +241,13 @@ Coverage plan_limit(const Batch& batch) {
     if (!recognised.chain) {
         return refuse_all(batch, recognised.refusal);
     }
+    if (batch.problems.front().temperature) {
+        return refuse_all(batch, "temperatures are not covered by this route");
+    }
     constexpr double seconds_per_answer = 2e-6;
     Coverage coverage;
     for (const Query& query : batch.queries) {
-        const std::string& instead = query.spec->on_infinite;
-        coverage.refusal.push_back(
-            query.spec->where != Where::finite ? ""
-            : instead.empty()
-                ? "has no meaning on the infinite chain"
-                : fmt::format("has no meaning on the infinite chain; {} has", instead));
+        coverage.refusal.push_back(refusal(query));
     }
     coverage.seconds =
         seconds_per_answer * static_cast<double>(batch.problems.size() * batch.queries.size());

@@ -1,6 +1,7 @@
 #pragma once
 
 #include <complex>
+#include <optional>
 #include <span>
 #include <string>
 #include <string_view>
@@ -8,7 +9,7 @@
 
 #include "chainmark/base/error.hpp"
 #include "chainmark/operators/chain.hpp"
-#include "chainmark/operators/term_list.hpp"
+#include "chainmark/operators/term_collector.hpp"
 
 /// From families and written terms to a canonical term list on a given chain.
 namespace chainmark {
@@ -36,16 +37,21 @@ struct FamilyParameter {
     std::string sentence;
 };
 
-/// A named Hamiltonian, sum over bonds j between sites j and j+1, without its field.
+/// A named Hamiltonian, sum over bonds j between sites j and j+1 unless its formula says otherwise,
+/// without its field.
 struct Family {
     std::string name;
     std::string formula;  ///< as text, for people
     std::string remark;   ///< one sentence: what it is known for, where its critical point lies
     std::vector<FamilyParameter> parameters;  ///< those without a default: every one is required
-    /// The terms for the given parameter values (in the order of `parameters`) on `chain`.
+    /// The terms for the given parameter values (in the order of `parameters`) on `chain`, which
+    /// `family_obstacle` has nothing against.
     std::vector<PlacedTerm> (*terms)(std::span<const double> values, const Chain& chain);
-    int cell = 1;           ///< sites after which the couplings repeat
-    int smallest_ring = 3;  ///< sites below which a ring's bonds coincide
+    int cell = 1;                        ///< sites after which the couplings repeat
+    int smallest_ring = 3;               ///< sites below which a ring's bonds coincide
+    std::optional<int> two_s = {};       ///< the only 2S it is defined for; nothing: every spin
+    bool periodic_only = false;          ///< defined on the ring without twist alone
+    std::optional<int> most_sites = {};  ///< where the number of terms grows faster than the chain
 };
 
 /// Every family, in the order in which they are shown. All take the field h besides:
@@ -55,12 +61,25 @@ std::span<const Family> families();
 /// nullptr for an unknown name.
 const Family* find_family(std::string_view name);
 
+/// What the family needs of the chain beside its parameters: "spin 1", "spin 1, a periodic ring";
+/// empty where it takes every chain.
+std::string family_needs(const Family& family);
+
+/// Why the family does not exist on `chain` (`bad_chain`, no place); nothing where it does.
+std::optional<Error> family_obstacle(const Family& family, const Chain& chain);
+
+/// The family's terms for the parameter values; fails with `family_obstacle`.
+Result<std::vector<PlacedTerm>> family_terms(const Family& family,
+                                             std::span<const double> values,
+                                             const Chain& chain);
+
 /// Number of placements of a term on `chain`: L on a ring, L - range on an open chain, `cell` on
 /// the infinite chain, 1 for a fixed term.
 int placement_count(const PlacedTerm& term, const Chain& chain, int cell);
 
 /// The canonical list of all `terms`. Fails (`bad_chain`) where the chain is too short for a term
-/// or placements coincide and `coincident` refuses, and where the sum is not Hermitian.
+/// or placements coincide and `coincident` refuses, where there are more than 5e7 strings to add
+/// up, and with `not_hermitian` where the sum is not Hermitian.
 Result<TermList> build_terms(const Chain& chain,
                              std::span<const PlacedTerm> terms,
                              Coincident coincident,

@@ -16,7 +16,7 @@ constexpr double largest_size = 1e100;  ///< of a coupling or field; squares sta
 
 Chain chain_at(const Case& c, const Parameters& point) {
     const double sites = parameter(point, "sites");
-    Chain chain{.sites = {}, .boundary = c.boundary, .twist = c.twist};
+    Chain chain{.sites = {}, .boundary = c.boundary, .twist = c.twist, .two_s = c.two_s};
     if (sites != infinite_sites) {
         chain.sites = static_cast<int>(sites);
     }
@@ -219,7 +219,11 @@ Result<TermList> ProblemBuilder::build_list(const Parameters& point) const {
         for (const FamilyParameter& p : case_.family->parameters) {
             values.push_back(parameter(point, p.name));
         }
-        terms = case_.family->terms(values, chain);
+        Result<std::vector<PlacedTerm>> written = family_terms(*case_.family, values, chain);
+        if (!written) {
+            return tl::unexpected(written.error());
+        }
+        terms = std::move(*written);
     }
     for (const CaseTerm& term : case_.terms) {
         Result<PlacedTerm> placed = placed_term(term, chain, cell, point);
@@ -234,7 +238,7 @@ Result<TermList> ProblemBuilder::build_list(const Parameters& point) const {
 Result<ProblemBuilder::Shared> ProblemBuilder::terms_at(const Parameters& point) {
     std::vector<double> key;
     for (const auto& [name, value] : point) {
-        if (name != "h" || field_in_terms_) {
+        if (name != "temperature" && (name != "h" || field_in_terms_)) {
             key.push_back(value);
         }
     }
@@ -278,6 +282,9 @@ Result<Problem> ProblemBuilder::build_without_field(const Parameters& point) {
 
 Result<Problem> ProblemBuilder::build(const Parameters& point) {
     Result<Problem> problem = build_without_field(point);
+    if (problem && case_.has_temperature()) {
+        problem->temperature = parameter(point, "temperature");
+    }
     if (problem && case_.family != nullptr) {
         const double h = parameter(point, "h");
         if (h != 0.0 && !(std::abs(h) <= largest_size && std::abs(h) >= 1 / largest_size)) {

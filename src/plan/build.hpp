@@ -10,7 +10,7 @@
 namespace chainmark {
 
 /// Builds the problems of one case and shares term lists between points that differ in the field
-/// alone.
+/// and the temperature alone.
 class ProblemBuilder {
 public:
     explicit ProblemBuilder(const Case& c);
@@ -18,7 +18,7 @@ public:
     /// The problem at a point; see build_problem.
     Result<Problem> build(const Parameters& point);
 
-    /// The same with the family's own field set to 0.
+    /// The same with the family's own field set to 0, in the ground state.
     Result<Problem> build_without_field(const Parameters& point);
 
     /// Whether the case's terms have a meaning on the infinite chain.

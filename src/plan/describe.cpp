@@ -1,7 +1,9 @@
 #include <map>
+#include <set>
 
 #include <fmt/format.h>
 
+#include "chainmark/base/words.hpp"
 #include "chainmark/plan/work.hpp"
 
 namespace chainmark {
@@ -37,11 +39,20 @@ std::string job_text(const Job& job) {
 
 std::string bundle_text(const Bundle& bundle, const std::vector<Job>& jobs) {
     const auto& problems = bundle.batch.problems;
-    std::string text = fmt::format("  {}{}, {} field{}\n",
-                                   to_string(problems.front().chain),
-                                   bundle.beside ? " beside the finite ones" : "",
-                                   problems.size(),
-                                   problems.size() == 1 ? "" : "s");
+    std::set<double> fields;
+    std::set<double> temperatures;
+    for (const Problem& problem : problems) {
+        fields.insert(problem.field);
+        if (problem.temperature) {
+            temperatures.insert(*problem.temperature);
+        }
+    }
+    std::string text =
+        fmt::format("  {}{}, {}{}\n",
+                    to_string(problems.front().chain),
+                    bundle.beside ? " beside the finite ones" : "",
+                    counted(fields.size(), "field"),
+                    temperatures.empty() ? "" : ", " + counted(temperatures.size(), "temperature"));
     for (const Job& job : jobs) {
         if (job.bundle == &bundle) {
             text += job_text(job);

@@ -1,6 +1,9 @@
 #include <algorithm>
+#include <compare>
 #include <map>
+#include <optional>
 #include <set>
+#include <tuple>
 
 #include "chainmark/plan/build.hpp"
 #include "chainmark/plan/work.hpp"
@@ -114,28 +117,32 @@ private:
         return work_.cases.back().rows.size() - 1;
     }
 
-    /// Adds a problem to the bundle with the same terms, or opens one. A bundle asks everything
-    /// that the case asks of such a chain, so that quantities of a point and of the whole chain
-    /// come from one solution. Where the field does not commute every problem is work of its own:
-    /// it stays alone and asks only what it needs.
+    /// Adds a problem to the bundle that shares its solution, or opens one. Where the field
+    /// commutes with the terms all fields share, and the bundle asks everything that the case asks
+    /// of such a chain, so that quantities of a point and of the whole chain come from one
+    /// solution. Where it does not, every field is work of its own and asks only what it needs.
+    /// Temperatures always share: a complete spectrum serves them all.
     void add_to_bundle(const Problem& problem,
                        std::size_t row,
                        const std::vector<std::size_t>& quantities,
                        bool beside) {
-        const Key key{problem.terms.get(), beside};
         const bool shares = conserves_sz(*problem.terms);
+        const Key key{
+            .terms = problem.terms.get(),
+            .beside = beside,
+            .field = shares ? std::nullopt : std::optional(problem.field),
+            .quantities = shares && !beside ? asked_of(problem.chain.is_infinite()) : quantities};
         auto at = open_.find(key);
-        if (at == open_.end() || !shares) {
+        if (at == open_.end()) {
             auto bundle = std::make_unique<Bundle>();
-            bundle->quantities =
-                shares && !beside ? asked_of(problem.chain.is_infinite()) : quantities;
+            bundle->quantities = key.quantities;
             for (const std::size_t q : bundle->quantities) {
                 bundle->batch.queries.push_back(case_.quantities[q].query);
             }
             bundle->beside = beside;
             bundle->case_index = case_index_;
             work_.bundles.push_back(std::move(bundle));
-            at = open_.insert_or_assign(key, work_.bundles.back().get()).first;
+            at = open_.emplace(key, work_.bundles.back().get()).first;
         }
         add_problem(*at->second, problem, row, quantities);
     }
@@ -145,8 +152,8 @@ private:
                      std::size_t row,
                      const std::vector<std::size_t>& quantities) {
         // Beside several sizes stands the same infinite chain; other problems occur once.
-        const auto [at, fresh] =
-            index_.emplace(std::pair(&bundle, problem.field), bundle.batch.problems.size());
+        const auto [at, fresh] = index_.emplace(
+            std::tuple(&bundle, problem.field, problem.temperature), bundle.batch.problems.size());
         const std::size_t index = at->second;
         if (fresh) {
             bundle.batch.problems.push_back(problem);
@@ -162,7 +169,18 @@ private:
         }
     }
 
-    using Key = std::pair<const TermList*, bool>;
+    /// What problems of one bundle have in common.
+    struct Key {
+        const TermList* terms = nullptr;
+        bool beside = false;
+        std::optional<double> field;  ///< nothing where fields share
+        std::vector<std::size_t> quantities;
+
+        auto operator<=>(const Key&) const = default;
+    };
+
+    /// A problem of a bundle: the bundle, the field, the temperature.
+    using ProblemKey = std::tuple<const Bundle*, double, std::optional<double>>;
 
     const Case& case_;
     std::size_t case_index_;
@@ -171,7 +189,7 @@ private:
     Errors errors_;
     std::set<Parameters> chains_;
     std::map<Key, Bundle*> open_;
-    std::map<std::pair<const Bundle*, double>, std::size_t> index_;  ///< of a field in a bundle
+    std::map<ProblemKey, std::size_t> index_;  ///< in the bundle's list of problems
 };
 
 bool is_wanted(const Case& c, RouteId route) {

@@ -106,7 +106,8 @@ std::optional<MemoryBudget::Lease> take_memory(const Job& job, const Context& co
     return std::nullopt;
 }
 
-Answers evaluate(const Job& job, const Context& context) {
+/// One of `workers` jobs that run side by side.
+Answers evaluate(const Job& job, const Context& context, std::size_t workers) {
     if (!job.coverage.covers_any()) {
         return same_everywhere(job, NotCovered{});
     }
@@ -118,8 +119,13 @@ Answers evaluate(const Job& job, const Context& context) {
                                   size_text(job.coverage.bytes),
                                   size_text(context.memory->limit()))});
     }
+    // The route counts its arrays itself, against the job's own share: what it said it needs, and
+    // what the others leave it.
+    Context own = context;
+    own.memory = std::make_shared<MemoryBudget>(
+        std::max(job.coverage.bytes, context.memory->limit() / static_cast<double>(workers)));
     try {
-        return job.route->evaluate(job.bundle->batch, context);
+        return job.route->evaluate(job.bundle->batch, own);
     } catch (const std::bad_alloc&) {
         return same_everywhere(job, Undecided{"the system has no memory left"});
     } catch (const std::runtime_error& failure) {
@@ -135,6 +141,7 @@ std::string describe(const Job& job) {
 void work_through(const std::shared_ptr<State>& state,
                   const std::shared_ptr<const std::vector<const Job*>>& jobs,
                   const std::shared_ptr<std::atomic<std::size_t>>& next,
+                  std::size_t workers,
                   const Context& context) {
     try {
         for (std::size_t i = (*next)++; i < jobs->size(); i = (*next)++) {
@@ -143,7 +150,7 @@ void work_through(const std::shared_ptr<State>& state,
             if (context.progress && job.coverage.covers_any()) {
                 context.progress->started(describe(job));
             }
-            finish_job(*state, job, evaluate(job, context));
+            finish_job(*state, job, evaluate(job, context, workers));
             if (context.progress) {
                 context.progress->finished(job.coverage.seconds);
             }
@@ -177,7 +184,7 @@ void run_phase(const std::shared_ptr<State>& state,
     const std::size_t pool = std::min(jobs.size(), static_cast<std::size_t>(workers));
     state->active = pool;
     for (std::size_t i = 0; i < pool; ++i) {
-        std::thread(work_through, state, shared_jobs, next, context).detach();
+        std::thread(work_through, state, shared_jobs, next, pool, context).detach();
     }
     std::unique_lock lock(state->mutex);
     const std::stop_callback wake(state->context.stop, [&] { state->changed.notify_all(); });

@@ -1,6 +1,7 @@
 #pragma once
 
 #include <memory>
+#include <optional>
 
 #include "chainmark/operators/chain.hpp"
 #include "chainmark/operators/term_list.hpp"
@@ -11,10 +12,14 @@ namespace chainmark {
 ///
 /// The uniform field is kept apart: where it commutes with the terms, one solution of the terms
 /// serves every field. Problems of one sweep share their list.
+///
+/// With a temperature T > 0 (k_B = 1, in the unit of the couplings) averages run over all
+/// (2S+1)^L states with weights exp(-E/T); without one they run over the ground space.
 struct Problem {
     Chain chain;
     std::shared_ptr<const TermList> terms;
     double field = 0.0;
+    std::optional<double> temperature = {};  ///< nothing: the ground state
 };
 
 /// terms - field * sum_j Sz_j as one list. Finite chains.

@@ -8,7 +8,7 @@
 namespace chainmark {
 namespace {
 
-const std::array<QuantitySpec, 13> table = {{
+const std::array<QuantitySpec, 24> table = {{
     {.id = QuantityId::ground_energy,
      .name = "ground_energy",
      .sentence = "lowest eigenvalue of H, field term included (a total)",
@@ -19,17 +19,21 @@ const std::array<QuantitySpec, 13> table = {{
      .where = Where::both},
     {.id = QuantityId::gap,
      .name = "gap",
-     .sentence = "lowest level outside the ground space minus the lowest level",
-     .where = Where::both},
+     .sentence = "lowest level outside the ground space minus the lowest level; with `sector`, the "
+                 "lowest level of that sector minus the ground energy",
+     .where = Where::both,
+     .options = {OptionId::sector}},
     {.id = QuantityId::levels,
      .name = "levels",
-     .sentence = "the `count` lowest levels of the full spectrum, every copy counted",
-     .options = {OptionId::count}},
-    {.id = QuantityId::spectrum, .name = "spectrum", .sentence = "all 2^L levels, ascending"},
+     .sentence = "the `count` lowest levels of the full spectrum, or of one `sector`, every copy "
+                 "counted",
+     .options = {OptionId::count, OptionId::sector}},
+    {.id = QuantityId::spectrum, .name = "spectrum", .sentence = "all (2S+1)^L levels, ascending"},
     {.id = QuantityId::magnetization,
      .name = "magnetization",
-     .sentence = "(1/L) sum_j <Sz_j>, averaged over the ground space",
-     .where = Where::both},
+     .sentence = "(1/L) sum_j <Sz_j>, averaged over the ground space, or thermal",
+     .where = Where::both,
+     .when = When::either},
     {.id = QuantityId::local_magnetization,
      .name = "local_magnetization",
      .sentence = "<S_j> along `axis` (default z) on every site, averaged over the ground space",
@@ -37,9 +41,11 @@ const std::array<QuantitySpec, 13> table = {{
     {.id = QuantityId::susceptibility,
      .name = "susceptibility",
      .sentence =
-         "dm/dh' at h' = 0 of an added -h' sum_j Sz_j; on a finite chain that conserves Sz it "
-         "is 0 between jumps and has the status `jump` at one",
-     .where = Where::both},
+         "dm/dh' at h' = 0 of an added -h' sum_j Sz_j; in the ground state of a finite chain that "
+         "conserves Sz it is 0 between jumps and has the status `jump` at one; with a temperature "
+         "it is the isothermal one",
+     .where = Where::both,
+     .when = When::either},
     {.id = QuantityId::jump_fields,
      .name = "jump_fields",
      .sentence =
@@ -49,10 +55,72 @@ const std::array<QuantitySpec, 13> table = {{
     {.id = QuantityId::spin_correlation,
      .name = "spin_correlation",
      .sentence =
-         "<Sz_i Sz_j> for `pairs`, or for each `distance` r the mean over all i the boundary "
-         "allows; `connected` subtracts <Sz_i><Sz_j>",
+         "<A_i B_j> with the operators of `axes` (default zz) for `pairs`, or for each `distance` "
+         "r "
+         "the mean over all i the boundary allows; `connected` subtracts <A_i><B_j>; averaged over "
+         "the ground space, or thermal; complex for +-",
      .where = Where::both,
+     .when = When::either,
      .options = {OptionId::axes, OptionId::distance, OptionId::pairs, OptionId::connected}},
+    {.id = QuantityId::structure_factor,
+     .name = "structure_factor",
+     .sentence = "S(q) = (1/L) sum_ij exp(-i q (i-j)) <A_i B_j> with the operators of `axes` "
+                 "(default zz), an array over q = 2 pi n/L, n = 0 ... L-1; real; `connected` "
+                 "subtracts <A_i><B_j>",
+     .options = {OptionId::axes, OptionId::connected}},
+    {.id = QuantityId::string_order,
+     .name = "string_order",
+     .sentence = "<Sa_i [prod_{i<k<j} U_k] Sa_j> along `axis` a (default z) for `pairs` i < j, or "
+                 "for each `distance` the mean over all i; U = exp(i pi Sa) for integer S, 2 Sa "
+                 "for S = 1/2, no sign added",
+     .where = Where::both,
+     .options = {OptionId::axis, OptionId::distance, OptionId::pairs}},
+    {.id = QuantityId::entanglement_entropy,
+     .name = "entanglement_entropy",
+     .sentence = "entropy of the sites of `block` in the ground state, or in the lowest state of a "
+                 "`sector`: `order` 1 -Tr rho ln rho, n >= 2 ln(Tr rho^n)/(1-n); in nats, or in "
+                 "bits with `log` = 2",
+     .options = {OptionId::block, OptionId::order, OptionId::log, OptionId::sector}},
+    {.id = QuantityId::energy,
+     .name = "energy",
+     .sentence = "E = Tr(H exp(-H/T))/Z, field term included (a total)",
+     .when = When::thermal,
+     .on_infinite = "energy_per_site"},
+    {.id = QuantityId::energy_per_site,
+     .name = "energy_per_site",
+     .sentence = "energy divided by L",
+     .where = Where::both,
+     .when = When::thermal},
+    {.id = QuantityId::free_energy,
+     .name = "free_energy",
+     .sentence = "F = -T ln Z, Z = Tr exp(-H/T) (a total)",
+     .when = When::thermal,
+     .on_infinite = "free_energy_per_site"},
+    {.id = QuantityId::free_energy_per_site,
+     .name = "free_energy_per_site",
+     .sentence = "free_energy divided by L",
+     .where = Where::both,
+     .when = When::thermal},
+    {.id = QuantityId::entropy,
+     .name = "entropy",
+     .sentence = "thermal entropy (E - F)/T in nats (a total)",
+     .when = When::thermal,
+     .on_infinite = "entropy_per_site"},
+    {.id = QuantityId::entropy_per_site,
+     .name = "entropy_per_site",
+     .sentence = "entropy divided by L",
+     .where = Where::both,
+     .when = When::thermal},
+    {.id = QuantityId::specific_heat,
+     .name = "specific_heat",
+     .sentence = "dE/dT = (<H^2> - <H>^2)/T^2 at fixed field (a total)",
+     .when = When::thermal,
+     .on_infinite = "specific_heat_per_site"},
+    {.id = QuantityId::specific_heat_per_site,
+     .name = "specific_heat_per_site",
+     .sentence = "specific_heat divided by L",
+     .where = Where::both,
+     .when = When::thermal},
     {.id = QuantityId::mode_energies,
      .name = "mode_energies",
      .sentence =
@@ -94,6 +162,8 @@ std::string to_string(OptionId option) {
     switch (option) {
         case OptionId::count:
             return "count";
+        case OptionId::sector:
+            return "sector";
         case OptionId::axis:
             return "axis";
         case OptionId::axes:
@@ -104,6 +174,12 @@ std::string to_string(OptionId option) {
             return "pairs";
         case OptionId::connected:
             return "connected";
+        case OptionId::block:
+            return "block";
+        case OptionId::order:
+            return "order";
+        case OptionId::log:
+            return "log";
         case OptionId::parity:
             return "parity";
     }
@@ -118,6 +194,22 @@ std::string to_string(Axis axis) {
             return "y";
         case Axis::z:
             return "z";
+    }
+    return "";
+}
+
+std::string to_string(Axes axes) {
+    switch (axes) {
+        case Axes::xx:
+            return "xx";
+        case Axes::yy:
+            return "yy";
+        case Axes::zz:
+            return "zz";
+        case Axes::plus_minus:
+            return "+-";
+        case Axes::dot:
+            return "dot";
     }
     return "";
 }
@@ -142,6 +234,18 @@ std::string to_string(Where where) {
             return "infinite";
         case Where::both:
             return "both";
+    }
+    return "";
+}
+
+std::string to_string(When when) {
+    switch (when) {
+        case When::ground_state:
+            return "ground_state";
+        case When::thermal:
+            return "thermal";
+        case When::either:
+            return "either";
     }
     return "";
 }

@@ -13,7 +13,9 @@
 namespace chainmark {
 
 /// Work that shares one solution: problems on the same chain with the same terms, differing in the
-/// uniform field alone, all asked the same queries.
+/// uniform field and the temperature alone, all asked the same queries. Either every problem has a
+/// temperature or none has, and a plan puts different fields together only where the field commutes
+/// with the terms: one complete spectrum serves them all.
 struct Batch {
     std::vector<Problem> problems;
     std::vector<Query> queries;

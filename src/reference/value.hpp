@@ -47,11 +47,22 @@ std::string to_string(Basis basis);
 enum class Completeness { proved, tested, not_shown };
 std::string to_string(Completeness completeness);
 
-/// Quantum numbers of one level; absent where not resolved.
+/// Quantum numbers of one level, absent where not resolved; or of a sector that a query asks for,
+/// absent where every value will do.
 struct Labels {
-    std::optional<double> sz = {};
-    std::optional<int> momentum = {};  ///< n of k = (2 pi n + twist N_up)/L, -L/2 < n <= L/2
-    std::optional<int> parity = {};    ///< of the up count, +1 or -1, where only that is conserved
+    std::optional<double> sz = {};       ///< total Sz, a multiple of 1/2; N_up = sz + L S
+    std::optional<int> momentum = {};    ///< n of k = (2 pi n + twist N_up)/L, -L/2 < n <= L/2
+    std::optional<int> parity = {};      ///< (-1)^N_up, +1 or -1; of a level where sz is not known
+    std::optional<int> reflection = {};  ///< +1 or -1 under j -> L-1-j, states of sites exchanged
+    std::optional<int> inversion = {};   ///< +1 or -1 under m -> -m on every site, no further sign
+
+    bool operator==(const Labels&) const = default;
+};
+
+/// Sectors that were not solved, since a proof says that they cannot hold the answer.
+struct Skipped {
+    std::string sectors;  ///< which: "Sz < 0"
+    std::string proof;    ///< a sentence with its reason: "Sz -> -Sz maps them onto Sz > 0"
 };
 
 /// Smallest and largest expectation value in a degenerate ground space, one pair an element.
@@ -80,6 +91,7 @@ struct Reference {
     std::optional<std::int64_t> degeneracy;  ///< dimension of the ground space
     std::optional<Range> range;
     std::vector<Labels> labels;        ///< level lists: one a level, or empty
+    std::vector<Skipped> skipped;      ///< what was left out by proof; empty: everything was solved
     std::optional<Approach> approach;  ///< route `limit` beside a finite chain
     RouteId route = RouteId::sector;
     double seconds = 0.0;

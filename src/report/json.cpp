@@ -103,20 +103,33 @@ Json range_json(const Reference& reference) {
     });
 }
 
-Json sectors_json(const std::vector<Labels>& labels) {
+Json labels_json(const Labels& labels) {
+    Json json = Json::object();
+    const auto add = [&](const char* name, const auto& label) {
+        if (label) {
+            json[name] = *label;
+        }
+    };
+    add("sz", labels.sz);
+    add("momentum", labels.momentum);
+    add("parity", labels.parity);
+    add("reflection", labels.reflection);
+    add("inversion", labels.inversion);
+    return json;
+}
+
+Json sectors_json(const std::vector<Labels>& levels) {
     Json list = Json::array();
-    for (const Labels& label : labels) {
-        Json sector = Json::object();
-        if (label.sz) {
-            sector["sz"] = *label.sz;
-        }
-        if (label.momentum) {
-            sector["momentum"] = *label.momentum;
-        }
-        if (label.parity) {
-            sector["parity"] = *label.parity;
-        }
-        list.push_back(std::move(sector));
+    for (const Labels& labels : levels) {
+        list.push_back(labels_json(labels));
+    }
+    return list;
+}
+
+Json skipped_json(const std::vector<Skipped>& skipped) {
+    Json list = Json::array();
+    for (const Skipped& part : skipped) {
+        list.push_back({{"sectors", part.sectors}, {"proof", part.proof}});
     }
     return list;
 }
@@ -134,6 +147,9 @@ Json reference_json(const Reference& reference) {
     if (!reference.labels.empty()) {
         json["sectors"] = sectors_json(reference.labels);
     }
+    if (!reference.skipped.empty()) {
+        json["skipped"] = skipped_json(reference.skipped);
+    }
     json["degeneracy"] = or_null(reference.degeneracy);
     json["range"] = range_json(reference);
     return json;
@@ -143,16 +159,24 @@ Json option_json(OptionId option, const Options& given) {
     switch (option) {
         case OptionId::count:
             return given.count;
+        case OptionId::sector:
+            return given.sector ? labels_json(*given.sector) : Json(nullptr);
         case OptionId::axis:
             return to_string(given.axis);
         case OptionId::axes:
-            return "zz";
+            return to_string(given.axes);
         case OptionId::distance:
             return given.distance;
         case OptionId::pairs:
             return given.pairs;
         case OptionId::connected:
             return given.connected;
+        case OptionId::block:
+            return given.block;
+        case OptionId::order:
+            return given.order;
+        case OptionId::log:
+            return given.log2 ? Json(2) : Json(nullptr);
         case OptionId::parity:
             return to_string(given.parity);
     }
@@ -163,7 +187,8 @@ Json options_json(const Query& query) {
     Json json = Json::object();
     for (const OptionId option : query.spec->options) {
         Json value = option_json(option, query.options);
-        if (!value.is_array() || !value.empty()) {  // `distance` or `pairs`, whichever was given
+        if (!value
+                 .empty()) {  // null: not given; an empty list: of `distance` and `pairs` the other
             json[to_string(option)] = std::move(value);
         }
     }

@@ -86,9 +86,9 @@ std::string own_value(const Reference& reference, std::size_t element) {
         return fmt::format("{} values", value.data.size());
     }
     const bool ordinary = shown_status(value, element) == Special::none;
-    return size +
-           (ordinary ? number_text(value.real_at(element))
-                     : element_text(reference, element, all_digits)) +
+    const std::string number =
+        value.complex ? number_text(value.data[element]) : number_text(value.real_at(element));
+    return size + (ordinary ? number : element_text(reference, element, all_digits)) +
            (ordinary ? fmt::format(" +- {:.2g}", bound_at(reference, element)) : "") +
            fmt::format(" ({})", to_string(reference.basis));
 }

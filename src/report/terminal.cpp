@@ -173,6 +173,9 @@ std::string table_text(const Case& c,
 
 std::string system_text(const Case& c) {
     std::vector<std::string> parts = {"boundary " + boundary_text(c)};
+    if (c.two_s != 1) {
+        parts.push_back("spin " + spin_text(c.two_s));
+    }
     if (c.family != nullptr) {
         parts.push_back(c.family->name + ": " + c.family->formula);
     }

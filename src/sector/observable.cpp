@@ -1,9 +1,7 @@
 #include "chainmark/sector/observable.hpp"
 
+#include <algorithm>
 #include <cmath>
-#include <map>
-
-#include <Eigen/Eigenvalues>
 
 #include "chainmark/base/numerics.hpp"
 
@@ -12,160 +10,210 @@ namespace {
 
 using Complex = std::complex<double>;
 
-constexpr std::size_t largest_range_space = 64;
-
-/// One ground state: amplitudes over the basis of its sector.
-struct State {
-    const SectorBasis* basis;
-    Eigen::VectorXcd amplitudes;
-};
-
-/// <bra|A|ket>, summed in extended precision.
-Complex element(const std::vector<BitTerm>& terms, const State& bra, const State& ket) {
-    long double real = 0;
-    long double imaginary = 0;
-    for (std::int64_t i = 0; i < ket.basis->dim(); ++i) {
-        const std::uint64_t state = ket.basis->state(i);
-        for (const BitTerm& term : terms) {
-            if (!term.acts_on(state)) {
-                continue;
+/// The factor at its site 0 ... L-1. Element (to, from) raises by to - from and takes the phase
+/// of the boundary to that power for every time around the ring.
+PlacedMatrix brought_back(PlacedMatrix factor, const Chain& chain) {
+    const auto dim = factor.matrix.dim();
+    for (; factor.site >= chain.length(); factor.site -= chain.length()) {
+        for (std::size_t to = 0; to < dim; ++to) {
+            for (std::size_t from = 0; from < dim; ++from) {
+                const SiteMatrix::Entry phase(to > from ? chain.wrap_phase()
+                                                        : std::conj(chain.wrap_phase()));
+                for (std::size_t k = std::min(to, from); k < std::max(to, from); ++k) {
+                    factor.matrix.entries[to * dim + from] *= phase;
+                }
             }
-            const std::uint64_t target = state ^ term.flip;
-            if (!bra.basis->contains(target)) {
-                continue;
-            }
-            const std::int64_t row =
-                term.flip == 0 && bra.basis == ket.basis ? i : bra.basis->rank(target);
-            const Complex x =
-                std::conj(bra.amplitudes[row]) * term.amplitude(state) * ket.amplitudes[i];
-            real += x.real();
-            imaginary += x.imag();
         }
     }
-    return {static_cast<double>(real), static_cast<double>(imaginary)};
+    return factor;
 }
 
-/// Largest residual/gap over the sectors that hold ground states.
-double tilt_of(const Solution& solution, const GroundSpace& ground) {
-    std::map<std::size_t, std::vector<const BlockLevel*>> by_block;
-    for (const BlockLevel& member : ground.members) {
-        by_block[member.block].push_back(&member);
-    }
-    double tilt = 0.0;
-    for (const auto& [index, members] : by_block) {
-        const Block& block = solution.block(index);
-        double squares = 0.0;
-        std::size_t highest = 0;  // equal energies leave the order of members open
-        for (const BlockLevel* member : members) {
-            squares += std::pow(block.residual(member->level), 2);
-            highest = std::max(highest, member->level);
-        }
-        if (highest + 1 < block.known()) {
-            const double gap = block.energy(highest + 1) - block.energy(highest);
-            tilt = std::max(tilt, std::sqrt(squares) / gap);
+/// Upper bound of the largest singular value: sqrt(largest row sum * largest column sum).
+double norm_of(const SiteMatrix& matrix) {
+    const auto dim = matrix.dim();
+    std::vector<double> rows(dim, 0.0);
+    std::vector<double> columns(dim, 0.0);
+    for (std::size_t to = 0; to < dim; ++to) {
+        for (std::size_t from = 0; from < dim; ++from) {
+            const auto size = static_cast<double>(std::abs(matrix.entries[to * dim + from]));
+            rows[to] += size;
+            columns[from] += size;
         }
     }
-    return tilt;
+    return std::sqrt(*std::max_element(rows.begin(), rows.end()) *
+                     *std::max_element(columns.begin(), columns.end()));
 }
 
-double norm_bound(const Observable& observable) {
-    double norm = 0.0;
-    for (const Term& term : observable) {
-        double size = std::abs(term.coefficient);
-        for (const SiteFactor& factor : term.string) {
-            size *= factor.op == SiteOperator::z ? 0.5 : 1.0;
-        }
-        norm += size;
+/// A and B of each part of A_i B_j.
+std::vector<std::pair<SiteMatrix, SiteMatrix>> parts_of(Axes axes, int two_s) {
+    const auto along = [two_s](Axis axis) {
+        return std::pair(spin_matrix(axis, two_s), spin_matrix(axis, two_s));
+    };
+    switch (axes) {
+        case Axes::xx:
+            return {along(Axis::x)};
+        case Axes::yy:
+            return {along(Axis::y)};
+        case Axes::zz:
+            return {along(Axis::z)};
+        case Axes::plus_minus:
+            return {{SiteMatrix::raising(two_s), SiteMatrix::lowering(two_s)}};
+        case Axes::dot:
+            break;
     }
-    return norm;
-}
-
-std::pair<double, double> extremes(const std::vector<BitTerm>& terms,
-                                   const std::vector<State>& states) {
-    const auto size = static_cast<Eigen::Index>(states.size());
-    Eigen::MatrixXcd block(size, size);
-    for (Eigen::Index i = 0; i < size; ++i) {
-        for (Eigen::Index j = 0; j <= i; ++j) {
-            block(i, j) = element(
-                terms, states[static_cast<std::size_t>(i)], states[static_cast<std::size_t>(j)]);
-        }
-    }
-    const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXcd> solver(block, Eigen::EigenvaluesOnly);
-    return {solver.eigenvalues().minCoeff(), solver.eigenvalues().maxCoeff()};
+    return {along(Axis::x), along(Axis::y), along(Axis::z)};
 }
 
 }  // namespace
 
-Observable local_spin(Axis axis, int site, double factor) {
-    const OperatorString plus = {{site, SiteOperator::plus}};
-    const OperatorString minus = {{site, SiteOperator::minus}};
+std::vector<Term> terms_of(const StringSum& sum) {
+    std::vector<Term> terms;
+    for (const auto& [string, coefficient] : sum) {
+        if (!string.empty()) {
+            terms.push_back({string, coefficient});
+        }
+    }
+    return terms;
+}
+
+void add_product(Observable& observable,
+                 Complex weight,
+                 const std::vector<PlacedMatrix>& product,
+                 const Chain& chain) {
+    std::vector<PlacedMatrix> placed;
+    double norm = std::abs(weight);
+    for (const PlacedMatrix& factor : product) {
+        placed.push_back(brought_back(factor, chain));
+        norm *= norm_of(factor.matrix);
+    }
+    for (const WideTerm& term : expand(placed, chain.two_s)) {
+        observable.strings[term.string] += weight * Complex(term.coefficient);
+    }
+    observable.norm += norm;
+}
+
+double norm_of(const OperatorString& string, int two_s) {
+    double norm = 1.0;
+    for (const SiteFactor& factor : string) {
+        if (factor.op.is_diagonal()) {
+            double peak = 0.0;
+            for (int digit = 0; digit <= two_s; ++digit) {
+                peak = std::max(peak, std::abs(gram_value(two_s, factor.op.degree, digit)));
+            }
+            norm *= peak;
+        }
+    }
+    return norm;
+}
+
+SiteMatrix spin_matrix(Axis axis, int two_s) {
     switch (axis) {
         case Axis::x:
-            return {{plus, factor / 2}, {minus, factor / 2}};
-        case Axis::y:  // (S+ - S-) / (2i)
-            return {{plus, Complex(0, -factor / 2)}, {minus, Complex(0, factor / 2)}};
+            return SiteMatrix::sx(two_s);
+        case Axis::y:
+            return SiteMatrix::sy(two_s);
         case Axis::z:
             break;
     }
-    return {{{{site, SiteOperator::z}}, factor}};
+    return SiteMatrix::sz(two_s);
 }
 
-Observable mean_sz(int length) {
-    Observable sum;
-    for (int site = 0; site < length; ++site) {
-        sum.push_back({{{site, SiteOperator::z}}, 1.0 / length});
+std::vector<std::vector<std::pair<int, int>>> pairs_of(const Chain& chain, const Options& options) {
+    std::vector<std::vector<std::pair<int, int>>> result;
+    for (const auto& pair : options.pairs) {
+        result.push_back({pair});
     }
-    return sum;
-}
-
-Observable mean_zz(const std::vector<std::pair<int, int>>& pairs) {
-    const double weight = 1.0 / static_cast<double>(pairs.size());
-    Observable sum;
-    for (const auto& [i, j] : pairs) {
-        if (i == j) {
-            sum.push_back({{}, weight / 4});
-        } else {
-            sum.push_back(
-                {{{std::min(i, j), SiteOperator::z}, {std::max(i, j), SiteOperator::z}}, weight});
+    for (const int r : options.distance) {
+        result.emplace_back();
+        const int firsts = chain.is_ring() ? chain.length() : chain.length() - r;
+        for (int i = 0; i < firsts; ++i) {
+            result.back().emplace_back(i, i + r);
         }
     }
-    return sum;
-}
-
-Reference ground_averages(const Solution& solution,
-                          const GroundSpace& ground,
-                          const std::vector<Observable>& observables) {
-    std::vector<State> states;
-    for (const BlockLevel& member : ground.members) {
-        const Block& block = solution.block(member.block);
-        states.push_back({&block.basis(), block.vector(member.level)});
-    }
-    const double tilt = tilt_of(solution, ground);
-    const bool ranged = states.size() <= largest_range_space;
-    std::vector<double> averages;
-    Reference result;
-    Range range;
-    for (const Observable& observable : observables) {
-        const std::vector<BitTerm> terms = bit_terms(observable);
-        double trace = 0.0;
-        for (const State& state : states) {
-            trace += element(terms, state, state).real();
-        }
-        averages.push_back(trace / static_cast<double>(states.size()));
-        result.bound.push_back(norm_bound(observable) * (2 * tilt + 32 * epsilon));
-        if (ranged) {
-            range.push_back(states.size() == 1 ? std::pair(averages.back(), averages.back())
-                                               : extremes(terms, states));
-        }
-    }
-    result.value = Value::array(averages);
-    if (ranged) {
-        result.range = std::move(range);
-    }
-    result.basis = Basis::residual;
-    result.complete = ground.complete;
-    result.degeneracy = static_cast<std::int64_t>(ground.members.size());
     return result;
+}
+
+Observable observable_of(const PairSum& sum, const Chain& chain) {
+    Observable observable;
+    for (const PairTerm& term : sum) {
+        add_product(observable, term.weight, {term.a, term.b}, chain);
+    }
+    return observable;
+}
+
+std::vector<PairSum> correlations(const Chain& chain, const Options& options) {
+    const auto parts = parts_of(options.axes, chain.two_s);
+    std::vector<PairSum> sums;
+    for (const auto& pairs : pairs_of(chain, options)) {
+        PairSum& sum = sums.emplace_back();
+        const Complex weight = 1.0 / static_cast<double>(pairs.size());
+        for (const auto& [i, j] : pairs) {
+            for (const auto& [a, b] : parts) {
+                sum.push_back({{i, a}, {j, b}, weight});
+            }
+        }
+    }
+    return sums;
+}
+
+std::vector<PairSum> structure_factors(const Chain& chain, const Options& options) {
+    const auto parts = parts_of(options.axes, chain.two_s);
+    const int length = chain.length();
+    std::vector<PairSum> sums(static_cast<std::size_t>(length));
+    for (int n = 0; n < length; ++n) {
+        for (int i = 0; i < length; ++i) {
+            for (int j = 0; j < length; ++j) {
+                // The same turn for i - j and j - i, so that the sum is Hermitian to the last bit.
+                const double angle = 2 * pi * (n * std::abs(i - j) % length) / length;
+                const Complex weight = std::polar(1.0 / length, i > j ? -angle : angle);
+                for (const auto& [a, b] : parts) {
+                    sums[static_cast<std::size_t>(n)].push_back({{i, a}, {j, b}, weight});
+                }
+            }
+        }
+    }
+    return sums;
+}
+
+std::vector<Observable> local_spins(const Chain& chain, Axis axis) {
+    std::vector<Observable> result(static_cast<std::size_t>(chain.length()));
+    for (int site = 0; site < chain.length(); ++site) {
+        add_product(result[static_cast<std::size_t>(site)],
+                    1.0,
+                    {{site, spin_matrix(axis, chain.two_s)}},
+                    chain);
+    }
+    return result;
+}
+
+Observable mean_sz(const Chain& chain) {
+    Observable result;
+    for (int site = 0; site < chain.length(); ++site) {
+        add_product(result, 1.0 / chain.length(), {{site, SiteMatrix::sz(chain.two_s)}}, chain);
+    }
+    return result;
+}
+
+std::vector<Observable> factors_of(const PairSum& sum, const Chain& chain) {
+    std::vector<Observable> factors;
+    for (const PairTerm& term : sum) {
+        add_product(factors.emplace_back(), 1.0, {term.a}, chain);
+        add_product(factors.emplace_back(), 1.0, {term.b}, chain);
+    }
+    return factors;
+}
+
+void subtract_products(Average& average, const PairSum& sum, const std::vector<Average>& factors) {
+    for (std::size_t t = 0; t < sum.size(); ++t) {
+        const Average& a = factors[2 * t];
+        const Average& b = factors[2 * t + 1];
+        const Complex product = a.value * b.value;
+        const double error = std::abs(a.value) * b.bound + std::abs(b.value) * a.bound +
+                             a.bound * b.bound + 4 * epsilon * std::abs(product);
+        average.value -= sum[t].weight * product;
+        average.bound += std::abs(sum[t].weight) * error;
+    }
+    average.range.reset();
 }
 
 }  // namespace chainmark::sector

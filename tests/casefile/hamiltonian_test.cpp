@@ -30,11 +30,24 @@ TEST_CASE("every family is read by its name and its parameters") {
         for (const FamilyParameter& parameter : family.parameters) {
             lines += "\n" + parameter.name + " = 1";
         }
-        const Case c = case_of(changed("family = \"xx\"\nJ = 1.0", lines));
+        const std::string spin =
+            family.two_s ? "\nspin = \"" + spin_text(*family.two_s) + "\"" : "";
+        const Case c = case_of(
+            changed("[8, 12]", "[8, 12]" + spin, changed("family = \"xx\"\nJ = 1.0", lines)));
         REQUIRE(c.family != nullptr);
         CHECK(c.family->name == family.name);
         CHECK(c.axes.size() == family.parameters.size() + 2);
     }
+}
+
+TEST_CASE("a family has to exist on the chain") {
+    const std::string blbq = changed("\"xx\"", "\"blbq\"\ntheta = 0.3");
+    check_only_error(blbq, {ErrorCode::bad_chain, "c.toml:3:10", {"'blbq'", "it needs spin 1"}});
+    CHECK(case_of(changed("[8, 12]", "[8, 12]\nspin = 1", blbq)).two_s == 2);
+    const std::string far = changed("\"xx\"", "\"inverse_square\"");
+    CHECK(case_of(far).family->periodic_only);
+    check_only_error(changed("[8, 12]", "8\nboundary = \"open\"", far),
+                     {ErrorCode::bad_chain, "c.toml:3:9", {"open chain", "a periodic ring"}});
 }
 
 TEST_CASE("wrong families and parameters") {

@@ -41,7 +41,8 @@ TEST_CASE("bare names find their table") {
     CHECK(case_of(raw_case, {{"Jxy", "3"}}).axis("Jxy").values == Numbers{3});
     CHECK(case_of(small_case, {{"coincident", "once"}}).coincident == Coincident::once);
     CHECK(case_of(small_case, {{"combine", "zip"}}).zip);
-    check({"spin", "3/2"}, {ErrorCode::bad_value, "--set spin=3/2", {"spin 1/2 only"}});
+    CHECK(case_of(small_case, {{"spin", "3/2"}}).two_s == 3);
+    check({"spin", "2/3"}, {ErrorCode::unknown_name, "--set spin=2/3", {"1/2, 1, 3/2"}});
 }
 
 TEST_CASE("a name that the case gives comes before the keys of tables") {

@@ -104,20 +104,79 @@ TEST_CASE("the boundary") {
     check("{ twist = 1, phi = 2 }", {ErrorCode::unknown_key, "c.toml:4:25", {"'phi'"}});
 }
 
-TEST_CASE("spin 1/2 alone") {
-    CHECK(case_of(with_system("spin = \"1/2\"")).axes.size() == 3);
-    check_only_error(with_system("spin = \"1\""),
-                     {ErrorCode::bad_value, "c.toml:4:8", {"\"1\"", "spin 1/2 only"}});
-    check_only_error(with_system("spin = 0.5"),
-                     {ErrorCode::wrong_type, "c.toml:4:8", {"0.5", "\"1/2\""}});
+TEST_CASE("the spin, as a fraction or a number, is no grid parameter") {
+    CHECK(case_of(small_case).two_s == 1);
+    const auto two_s = [](const std::string& spin) {
+        const Case c = case_of(with_system("spin = " + spin));
+        CHECK(c.axes.size() == 3);
+        return c.two_s;
+    };
+    CHECK(two_s("\"1/2\"") == 1);
+    CHECK(two_s("\"1\"") == 2);
+    CHECK(two_s("\"3/2\"") == 3);
+    CHECK(two_s("\"15/2\"") == 15);
+    CHECK(two_s("0.5") == 1);
+    CHECK(two_s("1") == 2);
+    CHECK(two_s("1.0") == 2);
+    CHECK(two_s("7.5") == 15);
+    CHECK(case_of(small_case, {{"spin", "1"}}).two_s == 2);
+    CHECK(case_of(small_case, {{"spin", "3/2"}}).two_s == 3);
+    const auto check = [](const std::string& spin, const Expected& expected) {
+        check_only_error(with_system("spin = " + spin), expected);
+    };
+    check("\"2/2\"", {ErrorCode::unknown_name, "c.toml:4:8", {"\"2/2\"", "1/2, 1, 3/2"}});
+    check("\"8\"", {ErrorCode::unknown_name, "c.toml:4:8", {"\"8\"", "15/2"}});
+    check("0", {ErrorCode::bad_value, "c.toml:4:8", {"0", "0.5, 1, 1.5"}});
+    check("0.7", {ErrorCode::bad_value, "c.toml:4:8", {"0.7", "0.5, 1, 1.5"}});
+    check("8", {ErrorCode::bad_value, "c.toml:4:8", {"the number 8", "7.5"}});
+    check("-1", {ErrorCode::bad_value, "c.toml:4:8", {"-1"}});
+    check("nan", {ErrorCode::bad_value, "c.toml:4:8", {"nan", "finite"}});
+    check("[1, 2]", {ErrorCode::wrong_type, "c.toml:4:8", {"a list", "1/2, 1"}});
+    check_only_error(with_system("spn = 1"),
+                     {ErrorCode::unknown_key, "c.toml:4:1", {"'spn'", "did you mean 'spin'"}});
+}
+
+TEST_CASE("temperatures are a grid parameter, and above 0") {
+    CHECK_FALSE(case_of(small_case).has_temperature());
+    const auto at = [](const std::string& temperature) {
+        return changed("ground_energy", "energy", with_system("temperature = " + temperature));
+    };
+    const Case c = case_of(at("[0.5, 1]"));
+    CHECK(c.has_temperature());
+    CHECK(c.axes[1].name == "temperature");
+    CHECK(c.axis("temperature").values == Numbers{0.5, 1.0});
+    CHECK(case_of(at("2")).axis("temperature").values == Numbers{2.0});
+    CHECK(case_of(at("{ from = 0.1, to = 0.3, step = 0.1 }")).axis("temperature").values ==
+          Numbers{0.1, 0.2, 0.3});
+    CHECK(case_of(changed("ground_energy", "energy"), {{"temperature", "[0.3, 0.2]"}})
+              .axis("temperature")
+              .values == Numbers{0.3, 0.2});
+    const std::string instead = "for the ground state leave it out";
+    const auto check = [&](const std::string& temperature, const Expected& expected) {
+        check_only_error(at(temperature), expected);
+    };
+    check("0", {ErrorCode::bad_value, "c.toml:4:15", {"'temperature'", "value 0", instead}});
+    check("[0.5, -1]", {ErrorCode::bad_value, "c.toml:4:21", {"value -1", instead}});
+    check("{ from = 0, to = 1, count = 3 }",
+          {ErrorCode::bad_value, "c.toml:4:15", {"value 0", instead}});
+    check("1e-200", {ErrorCode::bad_value, "c.toml:4:15", {"between 1e-100 and 1e100"}});
+    check("inf", {ErrorCode::bad_value, "c.toml:4:15", {"inf", "finite"}});
+    check("\"cold\"", {ErrorCode::wrong_type, "c.toml:4:15", {"\"cold\"", "a number"}});
+    check("[0.5, 0.5]", {ErrorCode::bad_value, "c.toml:4:21", {"0.5 twice"}});
+    check_only_error(
+        with_system("temprature = 0.5"),
+        {ErrorCode::unknown_key, "c.toml:4:1", {"'temprature'", "did you mean 'temperature'"}});
+    check_only_error(small_case +
+                         "[parameters]\ntemperature = 1\n[[hamiltonian.term]]\n"
+                         "operators = [\"Sz\"]\noffsets = [0]\n"
+                         "coupling = { parameter = \"temperature\" }\n",
+                     {ErrorCode::bad_value, "c.toml:10:1", {"'temperature'", "take another"}});
 }
 
 TEST_CASE("unknown and missing keys of [system]") {
     check_only_error(
         with_system("boundry = \"open\""),
         {ErrorCode::unknown_key, "c.toml:4:1", {"[system]", "'boundry'", "'boundary'"}});
-    check_only_error(with_system("temperature = 0.5"),
-                     {ErrorCode::unknown_key, "c.toml:4:1", {"'temperature'"}});
     check_only_error(changed("sites = [8, 12]\n", ""),
                      {ErrorCode::missing_key,
                       "c.toml:2:2",

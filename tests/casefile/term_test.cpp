@@ -42,7 +42,7 @@ TEST_CASE("site operators and their powers") {
     CHECK(matrix_of("I").entries == SiteMatrix::identity().entries);
     // (Sz)^2 = 1/4 and (S+)^2 = 0 for spin 1/2; Sz^20 = 2^-20 in both states.
     CHECK(matrix_of("Sz^2").entries == SiteMatrix{{0.25, 0.0, 0.0, 0.25}}.entries);
-    CHECK(matrix_of("S+^2").entries == SiteMatrix{}.entries);
+    CHECK(matrix_of("S+^2").entries == SiteMatrix::zero().entries);
     CHECK(matrix_of("Sz^20").entries == SiteMatrix{{0x1p-20, 0.0, 0.0, 0x1p-20}}.entries);
 }
 

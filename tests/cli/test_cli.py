@@ -245,6 +245,10 @@ class Cases(Cli):
             "negative.toml": RING.replace("[6, 8]", "-4"),
             "huge.toml": RING.replace("[6, 8]", "99999999999999999999"),
             "missing.toml": RING.replace("J = 1.0\n", ""),
+            "spin.toml": RING.replace("[6, 8]", '[6, 8]\nspin = "1/3"'),
+            "cold.toml": RING.replace("[6, 8]", "[6, 8]\ntemperature = 0.0"),
+            "warm.toml": RING.replace("[6, 8]", "[6, 8]\ntemperature = 0.5"),
+            "sector.toml": RING.replace("count = 4", "count = 4\nsector = { sz = 0.5 }"),
         }
         for name, content in files.items():
             with self.subTest(name):
@@ -253,6 +257,21 @@ class Cases(Cli):
     def test_places_and_suggestions(self):
         case = self.write("key.toml", RING.replace("boundary", "boundry"))
         self.refused("run", case, says=r"key\.toml:5:1: .*boundry.*did you mean 'boundary'")
+        ring = self.write("ring.toml", RING)
+        self.refused("run", ring, "--set", "temprature=1", says="did you mean 'temperature'")
+        sector = self.write("s.toml", RING.replace("count = 4", "count = 4\nsector = { szz = 0 }"))
+        self.refused("run", sector, says=r"s\.toml:15:12: .*szz.*did you mean 'sz'")
+
+    def test_ground_state_and_temperature_do_not_meet(self):
+        ring = self.write("ring.toml", RING)
+        says = r"'ground_energy' belongs to the ground state(.|\n)*'levels' belongs"
+        message = self.refused("run", ring, "--set", "temperature=0.5", says=says)
+        self.assertIn("free_energy_per_site", message)
+        warm = self.write("warm.toml", RING.split("[[quantity]]")[0]
+                          + '[[quantity]]\nname = "entropy"\n')
+        self.refused("run", warm, says="'entropy' needs a temperature.*temperature = ")
+        plan = self.call("show", "plan", warm, "--set", "temperature=[0.5, 1]", code=0).stdout
+        self.assertIn("ring of 8 sites, 2 fields, 2 temperatures\n", plan)
 
     def test_errors_of_all_cases_are_reported(self):
         one = self.write("one.toml", RING.replace('"xx"', '"xxx"'))
@@ -300,6 +319,15 @@ class Show(Cli):
             text = self.call("show", topic, code=0).stdout
             for entry in json.loads(self.call("show", topic, "--json", "-", code=0).stdout):
                 self.assertIn(entry["name"], text)
+        quantities = json.loads(self.call("show", "quantities", "--json", "-", code=0).stdout)
+        when = {entry["name"]: entry["when"] for entry in quantities}
+        self.assertEqual([when[name] for name in ["gap", "entropy", "magnetization"]],
+                         ["ground_state", "thermal", "either"])
+
+    def test_spins_are_named(self):
+        ring = self.write("ring.toml", RING)
+        terms = self.call("show", "terms", ring, "--set", "spin=3/2", code=0).stdout
+        self.assertIn("ring of 6 sites of spin 3/2", terms)
 
     def test_every_example_runs_as_it_is(self):
         for family in json.loads(self.call("show", "families", "--json", "-", code=0).stdout):
@@ -333,7 +361,7 @@ class Show(Cli):
         terms = self.call("show", "terms", ring, *changes, code=0).stdout
         self.assertRegex(terms, r"open chain of 7 sites, J = 1, h = 0\.25\n")
         symmetries = self.call("show", "symmetries", ring, *changes, code=0).stdout
-        self.assertRegex(symmetries, r"translation by one site +no ")
+        self.assertRegex(symmetries, r"translation +no +the chain is open")
         self.assertRegex(symmetries, r"h = 0\.25\n")
         self.assertIn("7", self.call("show", "plan", ring, *changes, code=0).stdout)
         for topic in ["plan", "terms", "symmetries"]:

@@ -95,7 +95,8 @@ inline Problem xx_problem(const Chain& chain, double coupling, double field = 0.
 
 /// xx with its list written down at once, for very long chains.
 inline Problem long_xx_problem(const Chain& chain, double coupling, double field = 0.0) {
-    using enum SiteOperator;
+    constexpr SiteOperator plus = SiteOperator::plus;
+    constexpr SiteOperator minus = SiteOperator::minus;
     const int sites = chain.length();
     TermList list;
     for (int j = 0; j + 1 < sites; ++j) {

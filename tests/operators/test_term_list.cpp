@@ -1,7 +1,7 @@
 #include <doctest/doctest.h>
 
 #include "chainmark/base/numerics.hpp"
-#include "chainmark/operators/term_list.hpp"
+#include "chainmark/operators/term_collector.hpp"
 
 using namespace chainmark;
 

@@ -3,9 +3,8 @@
 #include <algorithm>
 #include <cmath>
 #include <numbers>
+#include <stdexcept>
 #include <vector>
-
-#include <doctest/doctest.h>
 
 namespace chainmark::test {
 namespace {
@@ -45,7 +44,9 @@ double bethe_lowest(int sites, int downs, double delta) {
     while (step(p, sites, delta) > 1e-17L && steps < most_steps) {
         ++steps;
     }
-    REQUIRE(steps < most_steps);
+    if (steps == most_steps) {
+        throw std::runtime_error("the iteration of the Bethe equations does not converge");
+    }
     Wide energy = sites * static_cast<Wide>(delta) / 4;
     for (const Wide momentum : p) {
         energy -= std::cos(momentum) + delta;

@@ -75,6 +75,44 @@ TEST_CASE("the layout of a run") {
     CHECK(quantity["not_run"].dump() == R"([{"route":"dense","reason":"too large"}])");
 }
 
+TEST_CASE("labels, skipped sectors and complex values") {
+    SampleRun run = sample_run({8}, {"spin_correlation", "levels"});
+    run.source->quantities[0].query.options = {.axes = Axes::plus_minus, .distance = {1, 2}};
+    run.source->quantities[1].query.options = {.count = 1,
+                                               .sector = Labels{.sz = 0.5, .reflection = -1}};
+    Value value = Value::array({0.25, -0.5});
+    value.data[1] = {-0.5, 0.125};
+    value.complex = true;
+    add_point(run, 8, 0.0, 0, {reference(RouteId::sector, value, 1e-15)}, Verdict::single);
+    Reference level = reference(RouteId::sector, Value::array({-3.5}), 1e-15);
+    level.labels = {{.sz = 0.5, .momentum = 3, .parity = -1, .reflection = -1, .inversion = 1}};
+    level.skipped = {{"Sz < 0", "Sz -> -Sz maps them onto Sz > 0"}};
+    add_point(run, 8, 0.5, 1, {level}, Verdict::single);
+    const Json points = parsed(run)["cases"][0]["points"];
+    const Json& correlation = points[0]["quantities"][0];
+    CHECK(correlation["options"].dump() == R"({"axes":"+-","distance":[1,2],"connected":false})");
+    CHECK(correlation["references"][0]["value"].dump() == "[[0.25,0.0],[-0.5,0.125]]");
+    CHECK(correlation["references"][0]["complex"] == true);
+    CHECK_FALSE(correlation["references"][0].contains("skipped"));
+    const Json& levels = points[1]["quantities"][0];
+    CHECK(levels["options"].dump() == R"({"count":1,"sector":{"sz":0.5,"reflection":-1}})");
+    CHECK(levels["references"][0]["sectors"].dump() ==
+          R"([{"sz":0.5,"momentum":3,"parity":-1,"reflection":-1,"inversion":1}])");
+    CHECK(levels["references"][0]["skipped"].dump() ==
+          R"([{"sectors":"Sz < 0","proof":"Sz -> -Sz maps them onto Sz > 0"}])");
+    CHECK_FALSE(levels["references"][0].contains("complex"));
+}
+
+TEST_CASE("options of an entropy") {
+    SampleRun run = sample_run({8}, {"entanglement_entropy"});
+    run.source->quantities[0].query.options = {.block = {0, 1, 2}, .order = 2, .log2 = true};
+    add_point(run, 8, 0.0, 0, {reference(RouteId::dense, Value::number(1.0), 0)}, Verdict::single);
+    CHECK(first_quantity(parsed(run))["options"].dump() ==
+          R"({"block":[0,1,2],"order":2,"log":2})");
+    run.source->quantities[0].query.options = {.block = {0, 3}};
+    CHECK(first_quantity(parsed(run))["options"].dump() == R"({"block":[0,3],"order":1})");
+}
+
 TEST_CASE("every double reads back identically") {
     std::mt19937_64 random(11);
     std::vector<double> numbers = {0.1, -0.0, 5e-324, 1.7976931348623157e308, 1.0 / 3.0};

@@ -55,6 +55,37 @@ TEST_CASE("a table with a row per point") {
     CHECK(longest_line(text) <= 112);
 }
 
+TEST_CASE("spin, options and complex arrays") {
+    SampleRun run = sample_run({8}, {"spin_correlation", "entanglement_entropy", "gap"});
+    run.source->two_s = 3;
+    run.source->quantities[0].query.options = {.axes = Axes::plus_minus, .distance = {1, 2}};
+    run.source->quantities[1].query.options = {.block = {0, 1, 2}, .order = 2, .log2 = true};
+    run.source->quantities[2].query.options = {.sector = Labels{.sz = 0.5, .momentum = -1}};
+    Value value = Value::array({0.25, -0.5});
+    value.data[1] = {-0.5, 0.125};
+    value.complex = true;
+    std::vector<Reference> both = {reference(RouteId::sector, value, 1e-15),
+                                   reference(RouteId::dense, value, 1e-15)};
+    both[1].value.data[1] = {-0.5, 0.375};
+    QuantityResult& differs = add_point(run, 8, 0.5, 0, both, Verdict::differ);
+    differs.comparison.element = 1;
+    differs.comparison.reason = "invented";
+    for (const std::size_t q : {1, 2}) {
+        add_point(run, 8, 0.5, q, {both[0]}, Verdict::single);
+    }
+    run.result().points[1].quantities[0].references[0].skipped = {{"Sz < 0", "a proof"}};
+    const std::string text = run_text(run.report, {});
+    contains(text, "boundary periodic; spin 3/2; xx: ");
+    contains(text, "  spin_correlation  (axes = +-, distance = [1, 2])\n");
+    contains(text, "  entanglement_entropy  (block = 3, order = 2, log = 2)\n");
+    contains(text, "  gap  (sector = { sz = 0.5, momentum = -1 })\n");
+    contains(text, "0.125");
+    contains(text, "-0.5+0.375j +- 1e-15");
+    CHECK(text.find("a proof") == std::string::npos);
+    run.source->quantities[1].query.options.block = {1, 2, 3};
+    contains(run_text(run.report, {}), "(block = [1, 2, 3], order = 2, log = 2)\n");
+}
+
 TEST_CASE("what differs shows every route's own value") {
     SampleRun run = sample_run({8}, {"ground_energy", "levels"});
     QuantityResult& result = add_point(run, 8, 0.5, 0, two_routes(-3.5, -3.25), Verdict::differ);

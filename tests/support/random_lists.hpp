@@ -25,7 +25,8 @@ inline double draw(std::mt19937_64& generator) {
     return std::uniform_real_distribution<double>(-1.0, 1.0)(generator);
 }
 
-/// Nearest- and next-nearest-neighbour couplings and fields that conserve what is asked for.
+/// Nearest- and next-nearest-neighbour couplings, fields and, for S > 1/2, single-site anisotropies
+/// and squared hops that conserve what is asked for.
 inline std::vector<PlacedTerm> random_terms(const RandomChain& wanted, std::mt19937_64& generator) {
     const auto couplings = [&](int distance, bool complex) {
         std::vector<std::complex<double>> values;
@@ -38,25 +39,31 @@ inline std::vector<PlacedTerm> random_terms(const RandomChain& wanted, std::mt19
         return values;
     };
     std::vector<PlacedTerm> terms;
-    const auto add = [&](SiteMatrix a, SiteMatrix b, int distance, bool complex, bool conjugate) {
-        terms.push_back({.factors = {a, b},
-                         .offsets = {0, distance},
-                         .coupling = couplings(distance, complex),
-                         .add_conjugate = conjugate});
-    };
-    const auto up = SiteMatrix::raising();
-    const auto down = SiteMatrix::lowering();
-    const auto z = SiteMatrix::sz();
+    const auto add =
+        [&](const SiteMatrix& a, const SiteMatrix& b, int distance, bool complex, bool conjugate) {
+            terms.push_back({.factors = {a, b},
+                             .offsets = {0, distance},
+                             .coupling = couplings(distance, complex),
+                             .add_conjugate = conjugate});
+        };
+    const int two_s = wanted.chain.two_s;
+    const auto up = SiteMatrix::raising(two_s);
+    const auto down = SiteMatrix::lowering(two_s);
+    const auto z = SiteMatrix::sz(two_s);
     add(up, down, 1, wanted.complex, true);
     add(z, z, 1, false, false);
     add(up, down, 2, wanted.complex, true);
     terms.push_back({.factors = {z}, .offsets = {0}, .coupling = couplings(0, false)});
+    if (two_s > 1) {
+        terms.push_back({.factors = {z * z}, .offsets = {0}, .coupling = couplings(0, false)});
+        add(up * up, down * down, 1, wanted.complex, true);
+    }
     if (wanted.keeps != Keeps::sz) {
         add(up, up, 1, wanted.complex, true);
     }
     if (wanted.keeps == Keeps::nothing) {
         terms.push_back(
-            {.factors = {SiteMatrix::sx()}, .offsets = {0}, .coupling = couplings(0, false)});
+            {.factors = {SiteMatrix::sx(two_s)}, .offsets = {0}, .coupling = couplings(0, false)});
     }
     return terms;
 }
@@ -73,8 +80,9 @@ inline Problem family_problem(const char* name,
                               const Chain& chain,
                               double field = 0.0) {
     const Family& family = *find_family(name);
-    const auto terms = family.terms(values, chain);
-    const Result<TermList> list = build_terms(chain, terms, Coincident::refuse, family.cell);
+    const auto terms = family_terms(family, values, chain);
+    const Result<TermList> list =
+        build_terms(chain, terms.value(), Coincident::refuse, family.cell);
     return {chain, std::make_shared<const TermList>(list.value()), field};
 }
 

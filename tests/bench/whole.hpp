@@ -1,0 +1,16 @@
+#pragma once
+
+#include <benchmark/benchmark.h>
+
+#include "bench/rings.hpp"
+
+namespace chainmark::bench {
+
+/// Ground energy with all symmetries in a process of its own: seconds all in, peak memory, bound,
+/// and error against the Bethe equations. `memory`: bytes allowed; 0: what is free.
+void measure_ground_energy(benchmark::State& state, const Ring& ring, double memory);
+
+/// All 2^L levels.
+void measure_spectrum(benchmark::State& state, const Ring& ring);
+
+}  // namespace chainmark::bench
