@@ -432,7 +432,8 @@ TEST_CASE("constants, tiny scales and jumps close to each other: all routes agre
 }
 
 TEST_CASE("a stop request ends the run within a second and keeps finished points") {
-    // The gap of 26 sites keeps the sectors busy for many seconds; the six-site points are done at once.
+    // The gap of 26 sites keeps the sectors busy for many seconds; the six-site points are done at
+    // once.
     const std::vector<Case> cases = {parsed(R"(
 [system]
 sites = [6, 26]
