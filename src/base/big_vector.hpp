@@ -18,8 +18,8 @@ void release_big(void* memory, std::size_t bytes) noexcept;
 template <class T>
 class BigAllocator {
 public:
-    using value_type =
-        T;  // the name that containers ask for. NOLINT(readability-identifier-naming)
+    // The name that containers ask for. NOLINTNEXTLINE(readability-identifier-naming)
+    using value_type = T;
 
     BigAllocator() = default;
     template <class U>

@@ -23,36 +23,6 @@ int largest_length(int two_s) {
     return length;
 }
 
-/// Why a query is beyond this route whatever the Hamiltonian; empty where it is not.
-std::string beyond(const Query& query, const Chain& chain, bool thermal) {
-    switch (query.spec->id) {
-        case QuantityId::mode_energies:
-            return "a quantity of free fermions";
-        case QuantityId::fermi_momentum:
-        case QuantityId::phase:
-            return "a quantity of the infinite chain";
-        case QuantityId::string_order:
-            if (chain.two_s % 2 == 1 && chain.two_s != 1) {
-                return "string order is defined for whole spins and for 1/2";
-            }
-            break;
-        default:
-            break;
-    }
-    if (thermal && query.spec->when == When::ground_state) {
-        return "a quantity of the ground state, without a temperature";
-    }
-    if (!thermal && query.spec->when == When::thermal) {
-        return "needs a temperature";
-    }
-    for (const int distance : query.options.distance) {
-        if (!chain.is_ring() && distance >= chain.length()) {
-            return fmt::format("no two sites are at a distance of {}", distance);
-        }
-    }
-    return "";
-}
-
 bool asks_for_kubo_response(const Batch& batch) {
     for (const Query& query : batch.queries) {
         if (query.spec->id == QuantityId::susceptibility) {
@@ -96,7 +66,7 @@ Coverage plan(const Batch& batch) {
     Coverage coverage = refuse_all(batch, "");
     for (std::size_t q = 0; q < batch.queries.size(); ++q) {
         const Query& query = batch.queries[q];
-        coverage.refusal[q] = beyond(query, chain, first.temperature.has_value());
+        coverage.refusal[q] = without_meaning(query, first);
         if (coverage.refusal[q].empty() && query.spec->id == QuantityId::jump_fields &&
             !conserved) {
             coverage.refusal[q] = "needs a Hamiltonian that conserves Sz";

@@ -56,14 +56,14 @@ public:
     explicit Exchanges(const Chain& chain)
         : length_(chain.length()),
           needed_(chain.two_s * chain.two_s),
-          seen_(static_cast<std::size_t>(length_ * length_), 0) {}
+          seen_(static_cast<std::size_t>(length_) * static_cast<std::size_t>(length_), 0) {}
 
     void add(const OperatorString& string) {
         if (string.size() == 2 && string[0].op.raises_by() * string[1].op.raises_by() == -1) {
             const bool first_up = string[0].op.raises_by() > 0;
             const int up = string[first_up ? 0 : 1].site;
             const int down = string[first_up ? 1 : 0].site;
-            ++seen_[static_cast<std::size_t>(up * length_ + down)];
+            ++seen_[place(up, down)];
         }
     }
 
@@ -86,8 +86,12 @@ public:
 
 private:
     bool exchange(int i, int j) const {
-        return seen_[static_cast<std::size_t>(i * length_ + j)] == needed_ &&
-               seen_[static_cast<std::size_t>(j * length_ + i)] == needed_;
+        return seen_[place(i, j)] == needed_ && seen_[place(j, i)] == needed_;
+    }
+
+    std::size_t place(int up, int down) const {
+        return static_cast<std::size_t>(up) * static_cast<std::size_t>(length_) +
+               static_cast<std::size_t>(down);
     }
 
     int length_;

@@ -57,16 +57,21 @@ public:
         }
     }
 
-    /// y with (H - energy) y = b in the range of Q, to a few roundings of the norm of H y.
+    /// y with (H - energy) y = b in the range of Q, as near as rounding lets conjugate gradients
+    /// come: past that point they wander off, so the best y is kept.
     Vector solve(const Vector& b, double energy) const {
+        constexpr int most_steps = 20000;
+        constexpr int patience = 30;  // steps without a better y that end the search
+        const double target = 4 * epsilon * b.norm();
         Vector y = Vector::Zero(b.size());
+        Vector best = y;
         Vector r = b;
         Vector p = r;
         double squares = r.squaredNorm();
-        const double target = 4 * epsilon * std::max(b.norm(), 1e-300);
-        for (int step = 0; std::sqrt(squares) > target + 4 * epsilon * op_->row_sum() * y.norm();
-             ++step) {
-            if (step > 20000) {
+        double least = squares;
+        int waited = 0;
+        for (int step = 0; std::sqrt(least) > target && waited < patience; ++step) {
+            if (step > most_steps) {
                 throw std::runtime_error(
                     "conjugate gradients for the susceptibility do not converge: a level lies very "
                     "close to the ground space");
@@ -74,15 +79,25 @@ public:
             poll(context_);
             Vector image = apply(p, energy);
             project(image);
-            const double alpha = squares / p.dot(image).real();
+            const double curvature = p.dot(image).real();
+            if (!(curvature > 0)) {
+                break;
+            }
+            const double alpha = squares / curvature;
             y += alpha * p;
             r -= alpha * image;
             const double next = r.squaredNorm();
             p = r + (next / squares) * p;
             squares = next;
+            ++waited;
+            if (squares < least) {
+                least = squares;
+                best = y;
+                waited = 0;
+            }
         }
-        project(y);
-        return y;
+        project(best);
+        return best;
     }
 
 private:

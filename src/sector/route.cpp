@@ -7,7 +7,7 @@
 #include <fmt/format.h>
 
 #include "chainmark/sector/evaluator.hpp"
-#include "chainmark/sector/solution.hpp"
+#include "chainmark/sector/workload.hpp"
 
 namespace chainmark {
 namespace {
@@ -21,36 +21,6 @@ std::string no_complete_solution(const Workload& work) {
                                       "largest here has {:.0f}",
                                       Block::complete_limit,
                                       work.largest);
-}
-
-/// Why the query makes no sense on this chain; empty where it does.
-std::string meaningless(const Query& query, const Chain& chain, bool thermal) {
-    switch (query.spec->id) {
-        case QuantityId::mode_energies:
-            return "a quantity of free fermions";
-        case QuantityId::fermi_momentum:
-        case QuantityId::phase:
-            return "a quantity of the infinite chain";
-        case QuantityId::string_order:
-            if (chain.two_s % 2 == 1 && chain.two_s != 1) {
-                return "string order is defined for whole spins and for 1/2";
-            }
-            break;
-        default:
-            break;
-    }
-    if (thermal && query.spec->when == When::ground_state) {
-        return "a quantity of the ground state, without a temperature";
-    }
-    if (!thermal && query.spec->when == When::thermal) {
-        return "needs a temperature";
-    }
-    for (const int distance : query.options.distance) {
-        if (distance >= chain.length()) {
-            return fmt::format("no two sites are at a distance of {}", distance);
-        }
-    }
-    return {};
 }
 
 /// The Hamiltonian as the batch's first problem has it, and what solving it takes.
@@ -81,7 +51,7 @@ Assessment assess(const Problem& problem, double field) {
 
 std::string refusal(const Query& query, const Assessment& found, const Problem& problem) {
     const bool thermal = problem.temperature.has_value();
-    if (std::string why = meaningless(query, problem.chain, thermal); !why.empty()) {
+    if (std::string why = without_meaning(query, problem); !why.empty()) {
         return why;
     }
     switch (query.spec->id) {
