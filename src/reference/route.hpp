@@ -47,8 +47,8 @@ struct Route {
 /// A coverage that refuses every query of `batch` for the same reason.
 Coverage refuse_all(const Batch& batch, const std::string& reason);
 
-/// Why a query has no meaning for a finite chain whatever its Hamiltonian and the route; empty where
-/// it has one.
+/// Why a query has no meaning for a finite chain whatever its Hamiltonian and the route; empty
+/// where it has one.
 std::string without_meaning(const Query& query, const Problem& problem);
 
 /// The routine part of `evaluate`: for every query that `coverage` accepts, answer(problem index,
