@@ -297,6 +297,8 @@ GroundEnergy Solution::ground_energy(const Problem& problem) {
     return ground;
 }
 
+// One loop with its exits: what it decides by is local to it.
+// NOLINTNEXTLINE(readability-function-cognitive-complexity)
 std::vector<SectorLevel> Solution::lowest(const Problem& problem,
                                           std::size_t count,
                                           const Accept& accept) {

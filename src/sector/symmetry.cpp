@@ -240,7 +240,7 @@ std::vector<Sector> sectors_of(const Chain& chain, const Symmetries& symmetries)
     std::vector<Sector> sectors;
     for (const int value : values_of(symmetries.conserved, packing)) {
         for (Sector& sector : sectors_of_value(symmetries, packing, value)) {
-            sectors.push_back(std::move(sector));
+            sectors.push_back(sector);
         }
     }
     const auto find = [&](const SectorLabel& label) {
