@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <iterator>
 #include <map>
 
 #include "chainmark/base/big_vector.hpp"
@@ -82,6 +83,22 @@ std::vector<SmallMatrix<Scalar>> lower_matrices(const HalvesBasis& basis,
     return result;
 }
 
+/// Whether a string is diagonal and acts on the upper sites alone: a number for a whole block.
+bool is_number_of_block(const OperatorString& string, int low_sites) {
+    return !string.empty() &&
+           std::all_of(string.begin(), string.end(), [low_sites](const SiteFactor& factor) {
+               return factor.site >= low_sites && factor.op.is_diagonal();
+           });
+}
+
+std::vector<Term> numbers_of_blocks(const std::vector<Term>& terms, int low_sites) {
+    std::vector<Term> result;
+    std::copy_if(terms.begin(), terms.end(), std::back_inserter(result), [&](const Term& term) {
+        return is_number_of_block(term.string, low_sites);
+    });
+    return result;
+}
+
 template <class Scalar>
 class ByHalves final : public LinearOperator<Scalar> {
 public:
@@ -89,11 +106,15 @@ public:
         : basis_(basis),
           context_(context),
           n_strings_(terms.size()),
-          row_sum_(PackedOperator(basis.packing(), terms).row_sum()) {
+          row_sum_(PackedOperator(basis.packing(), terms).row_sum()),
+          block_diagonal_(basis.packing(), numbers_of_blocks(terms, basis.packing().length / 2)) {
         const Packing& packing = basis.packing();
         const int low_sites = packing.length / 2;
         std::map<OperatorString, std::vector<Term>> by_upper;
         for (const Term& term : terms) {
+            if (is_number_of_block(term.string, low_sites)) {
+                continue;
+            }
             OperatorString upper = term.string;
             std::erase_if(upper, [&](const SiteFactor& f) { return f.site < low_sites; });
             by_upper[upper].push_back({part_of(term.string, 0, low_sites), term.coefficient});
@@ -153,7 +174,11 @@ private:
         const Word high = basis_.highs()[h];
         const auto size = static_cast<std::size_t>(basis_.start(h + 1) - basis_.start(h));
         const auto low_class = static_cast<std::size_t>(basis_.class_of_high(h));
-        sum.assign(size, Scalar(0.0));
+        const double diagonal = block_diagonal_.diagonal_element(high);
+        sum.resize(size);
+        for (std::size_t i = 0; i < size; ++i) {
+            sum[i] = diagonal * x[basis_.start(h) + static_cast<std::int64_t>(i)];
+        }
         for (const Product<Scalar>& product : products_) {
             double factor = 1.0;
             std::size_t source = h;
@@ -212,6 +237,7 @@ private:
     Context context_;
     std::size_t n_strings_;
     double row_sum_;
+    PackedOperator block_diagonal_;  ///< diagonal strings of the upper sites: one number a block
     std::vector<Product<Scalar>> products_;
     std::vector<std::pair<std::size_t, std::size_t>> pieces_;  ///< ranges of blocks
 };
