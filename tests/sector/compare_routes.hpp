@@ -6,8 +6,10 @@
 #include <variant>
 #include <vector>
 
+#include "chainmark/base/numerics.hpp"
 #include "support/ask.hpp"
 #include "support/near.hpp"
+#include "support/random_lists.hpp"
 
 /// Route sector against route dense, which shares no code with it.
 namespace chainmark::test {
@@ -74,6 +76,32 @@ inline void compare_routes(const Route& sector,
             if (std::holds_alternative<Reference>(ours) &&
                 std::holds_alternative<Reference>(theirs)) {
                 compare_references(std::get<Reference>(ours), std::get<Reference>(theirs), widest);
+            }
+        }
+    }
+}
+
+/// use(chain, keeps, uniform) for chains of S = 1/2 (`length` sites), 1 and 3/2 with every symmetry
+/// class of random_problem: open, rings, antiperiodic and twisted rings (the twist where Sz is
+/// conserved; S = 3/2 open alone).
+template <class Use>
+void for_varied_chains(int length, Use&& use) {
+    for (const int two_s : {1, 2, 3}) {
+        const int sites = two_s == 1 ? length : two_s == 2 ? 5 : 4;
+        for (const Keeps keeps : {Keeps::sz, Keeps::parity, Keeps::nothing}) {
+            for (const bool uniform : {true, false}) {
+                for (const double twist : {-1.0, 0.0, pi, 0.4}) {
+                    if ((keeps != Keeps::sz && twist == 0.4) || (two_s == 3 && twist >= 0)) {
+                        continue;
+                    }
+                    Chain chain = twist < 0 ? open_chain(sites) : ring(sites, twist);
+                    chain.two_s = two_s;
+                    CAPTURE(two_s);
+                    CAPTURE(static_cast<int>(keeps));
+                    CAPTURE(uniform);
+                    CAPTURE(twist);
+                    use(chain, keeps, uniform);
+                }
             }
         }
     }

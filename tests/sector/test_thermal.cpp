@@ -60,26 +60,10 @@ void check(Problem problem, const std::vector<double>& temperatures) {
 
 TEST_CASE("thermal averages of random chains: sector against dense") {
     std::mt19937_64 generator(72);
-    for (const int two_s : {1, 2, 3}) {
-        const int length = two_s == 1 ? 6 : two_s == 2 ? 5 : 4;
-        for (const Keeps keeps : {Keeps::sz, Keeps::parity, Keeps::nothing}) {
-            for (const bool uniform : {true, false}) {
-                for (const double twist : {-1.0, 0.0, pi, 0.4}) {
-                    if ((keeps != Keeps::sz && twist == 0.4) || (two_s == 3 && twist >= 0)) {
-                        continue;
-                    }
-                    Chain chain = twist < 0 ? open_chain(length) : ring(length, twist);
-                    chain.two_s = two_s;
-                    CAPTURE(two_s);
-                    CAPTURE(static_cast<int>(keeps));
-                    CAPTURE(uniform);
-                    CAPTURE(twist);
-                    check(random_problem({chain, keeps, uniform, two_s == 2}, generator, 0.1),
-                          {0.1, 0.5, 5.0});
-                }
-            }
-        }
-    }
+    for_varied_chains(6, [&](const Chain& chain, Keeps keeps, bool uniform) {
+        check(random_problem({chain, keeps, uniform, chain.two_s == 2}, generator, 0.1),
+              {0.1, 0.5, 5.0});
+    });
 }
 
 TEST_CASE("thermal averages where symmetries are many") {
