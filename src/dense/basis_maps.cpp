@@ -58,18 +58,25 @@ Eigen::Index Subset::find(const std::vector<int>& digits) const {
     return place_[static_cast<std::size_t>(state)];
 }
 
-std::optional<FullMatrix<Complex>> Subset::block_of(const FullMatrix<Complex>& matrix) const {
+bool Subset::is_closed_under(const FullMatrix<Complex>& matrix) const {
+    for (Eigen::Index i = 0; i < size(); ++i) {
+        for (FullMatrix<Complex>::InnerIterator it(matrix, state(i)); it; ++it) {
+            if (it.value() != 0.0 && place_[static_cast<std::size_t>(it.col())] < 0) {
+                return false;
+            }
+        }
+    }
+    return true;
+}
+
+FullMatrix<Complex> Subset::block_of(const FullMatrix<Complex>& matrix) const {
     std::vector<Eigen::Triplet<Complex>> elements;
     for (Eigen::Index i = 0; i < size(); ++i) {
         for (FullMatrix<Complex>::InnerIterator it(matrix, state(i)); it; ++it) {
             const Eigen::Index col = place_[static_cast<std::size_t>(it.col())];
-            if (it.value() == 0.0) {
-                continue;
+            if (col >= 0) {
+                elements.emplace_back(static_cast<int>(i), static_cast<int>(col), it.value());
             }
-            if (col < 0) {
-                return std::nullopt;
-            }
-            elements.emplace_back(static_cast<int>(i), static_cast<int>(col), it.value());
         }
     }
     FullMatrix<Complex> block(size(), size());

@@ -28,10 +28,11 @@ public:
     /// Place of the state with these digits; -1 where it is not in the subset.
     Eigen::Index find(const std::vector<int>& digits) const;
 
-    /// The rows and columns of `matrix` that belong to the subset, or nothing where elements lead
-    /// out of it.
-    std::optional<FullMatrix<std::complex<double>>> block_of(
-        const FullMatrix<std::complex<double>>& matrix) const;
+    /// Whether no element of `matrix` leads out of the subset.
+    bool is_closed_under(const FullMatrix<std::complex<double>>& matrix) const;
+
+    /// The rows and columns of `matrix` that belong to the subset.
+    FullMatrix<std::complex<double>> block_of(const FullMatrix<std::complex<double>>& matrix) const;
 
 private:
     Chain chain_;

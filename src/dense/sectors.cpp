@@ -240,15 +240,15 @@ SectorSpectrum sector_spectrum(const Problem& problem,
     if (subset.size() == 0) {
         return {"no state has these labels", {}, {}, {}, {}};
     }
-    const auto h = subset.block_of(full);
-    if (!h) {
+    if (!subset.is_closed_under(full)) {
         return {labels.sz ? "H does not conserve Sz" : "H does not conserve the parity of N_up",
                 {},
                 {},
                 {},
                 {}};
     }
-    const std::vector<Projector> projectors = projectors_of(labels, subset, *h, scale.weight);
+    const Matrix h = subset.block_of(full);
+    const std::vector<Projector> projectors = projectors_of(labels, subset, h, scale.weight);
     if (std::string reason = conflict(projectors); !reason.empty()) {
         return {std::move(reason), {}, {}, {}, {}};
     }

@@ -54,7 +54,11 @@ public:
         while (static_cast<double>(pairs_.size()) < wanted) {
             const Aim this_aim = count == 1 ? aim : Aim::vector;
             pairs_.push_back(lowest_outside<Scalar>(
-                *operator_, pairs_, this_aim, pairs_.empty() ? first_guess() : Start{}, context));
+                *operator_,
+                pairs_,
+                this_aim,
+                pairs_.empty() ? first_guess(context) : StartFiller<Scalar>{},
+                context));
             vectors_fit_ = this_aim == Aim::vector;
         }
         publish();
@@ -344,25 +348,50 @@ private:
                                                      : make_matrix_free(*rows_, context);
     }
 
-    using Start = std::function<Scalar(std::int64_t)>;
-
     /// Where the search for the sector's lowest state starts; empty: anywhere.
-    Start first_guess() const {
+    StartFiller<Scalar> first_guess(const Context& context) const {
         const std::optional<SignRotation>& rotation = hamiltonian_.sign_rotation;
-        if (!rotation || !orbits_ || !StartVector::applies(hamiltonian_) ||
+        if (!rotation || !StartVector::applies(hamiltonian_) ||
             !holds_positive_state(*rotation, sector_)) {
             return {};
         }
-        return [this, guess = StartVector(hamiltonian_, *rotation)](std::int64_t i) {
-            return Scalar(guess.amplitude(orbits_->word(i)));
+        return [this, &context, guess = StartVector(hamiltonian_, *rotation)](Scalar* x) {
+            for_each_word(context,
+                          [&](std::int64_t i, Word word) { x[i] = guess.amplitude(word); });
         };
+    }
+
+    /// visit(i, smallest configuration of component i), on all threads.
+    template <class Visit>
+    void for_each_word(const Context& context, Visit&& visit) const {
+        const std::int64_t count =
+            orbits_ ? orbits_->dim() : static_cast<std::int64_t>(configurations_->highs().size());
+        const std::int64_t piece = orbits_ ? 1 << 12 : 64;
+        parallel_for(static_cast<std::size_t>((count + piece - 1) / piece),
+                     context.threads,
+                     [&](std::size_t p) {
+                         poll(context);
+                         const std::int64_t first = static_cast<std::int64_t>(p) * piece;
+                         const std::int64_t last = std::min(count, first + piece);
+                         if (configurations_) {
+                             configurations_->for_each_in(static_cast<std::size_t>(first),
+                                                          static_cast<std::size_t>(last),
+                                                          visit);
+                             return;
+                         }
+                         for (std::int64_t i = first; i < last; ++i) {
+                             visit(i, orbits_->word(i));
+                         }
+                     });
     }
 
     /// The vectors of a list that was made for its energies alone, to full accuracy.
     void refine(const Context& context) {
         const BigVector<Scalar> start = std::move(pairs_.front().vector);
         pairs_.clear();
-        const Start from = [&start](std::int64_t i) { return start[static_cast<std::size_t>(i)]; };
+        const StartFiller<Scalar> from = [&start](Scalar* x) {
+            std::copy(start.begin(), start.end(), x);
+        };
         pairs_.push_back(lowest_outside<Scalar>(*operator_, pairs_, Aim::vector, from, context));
         vectors_fit_ = true;
     }

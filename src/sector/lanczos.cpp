@@ -1,12 +1,13 @@
 #include "chainmark/sector/lanczos.hpp"
 
 #include <cmath>
-#include <optional>
+#include <limits>
 #include <stdexcept>
 
 #include <fmt/format.h>
 
 #include "chainmark/base/numerics.hpp"
+#include "chainmark/sector/kept_vectors.hpp"
 #include "chainmark/sector/tridiagonal.hpp"
 #include "chainmark/sector/vector_sums.hpp"
 
@@ -15,7 +16,7 @@ namespace {
 
 constexpr int most_steps = 400;  // of one run; then anew from its vector
 constexpr int most_runs = 40;
-constexpr std::size_t most_kept = 150;  // vectors kept from the first run
+constexpr std::size_t most_kept = 150;
 
 /// A number in [-1/2, 1/2) that looks random, from its index and the number of its vector alone
 /// (the finalizer of a 64-bit mixing function, common practice), so that every thread can make its
@@ -34,6 +35,7 @@ template <class Scalar>
 class Search {
 public:
     using Vector = BigVector<Scalar>;
+    using Kept = KeptVectors<Scalar>;
 
     Search(const LinearOperator<Scalar>& op,
            const std::vector<EigenPair<Scalar>>& found,
@@ -47,18 +49,26 @@ public:
           dim_(op.dim()),
           size_(static_cast<std::size_t>(op.dim())),
           // What the residual of a perfect vector still shows.
-          noise_(epsilon * op.row_sum() * (4.0 + std::sqrt(static_cast<double>(op.n_strings())))) {}
+          noise_(epsilon * op.row_sum() * (4.0 + std::sqrt(static_cast<double>(op.n_strings())))),
+          kept_(size_, most_kept, context) {}
 
-    EigenPair<Scalar> run(const std::function<Scalar(std::int64_t)>& start) {
-        Vector begin;
+    EigenPair<Scalar> run(const StartFiller<Scalar>& start) {
+        begin_.resize(size_);
+        x_.resize(size_);
+        y_.resize(size_);
+        fill(start);
         for (int attempt = 0; attempt < most_runs; ++attempt) {
-            first_run(begin, start);
-            Vector vector = second_run(begin, start);
-            EigenPair<Scalar> pair = measure(std::move(vector));
+            iterate();
+            if (all_kept()) {
+                sum_kept();
+            } else {
+                iterate_again();
+            }
+            EigenPair<Scalar> pair = measure(std::move(begin_));
             if (good_enough(pair)) {
                 return pair;
             }
-            begin = std::move(pair.vector);
+            begin_ = std::move(pair.vector);
         }
         throw std::runtime_error(
             fmt::format("the Lanczos iteration did not converge in {} runs of {} steps",
@@ -69,26 +79,42 @@ public:
 private:
     int threads() const { return op_.threads(); }
 
-    /// Fills x with the start vector, outside the span of what is found.
-    void fill_start(const Vector& begin,
-                    const std::function<Scalar(std::int64_t)>& start,
-                    Vector& x) const {
-        sum_over_runs<long double>(dim_, threads(), [&](std::int64_t first, std::int64_t last) {
-            for (std::int64_t i = first; i < last; ++i) {
-                const auto at = static_cast<std::size_t>(i);
-                // Another vector in every search: the one that found a copy of a degenerate level
-                // has nothing left in that level once the copy is moved away.
-                x[at] = !begin.empty() ? begin[at]
-                        : start        ? start(i)
-                                       : Scalar(scattered(i, found_.size()));
-            }
-            return 0.0;
-        });
+    /// Fills begin_ with the start vector, outside the span of what is found.
+    void fill(const StartFiller<Scalar>& start) {
+        if (start) {
+            start(begin_.data());
+        } else {
+            each_run([&](std::int64_t first, std::int64_t last) {
+                for (std::int64_t i = first; i < last; ++i) {
+                    // Another vector in every search: the one that found a copy of a degenerate
+                    // level has nothing left in that level once the copy is moved away.
+                    begin_[static_cast<std::size_t>(i)] = scattered(i, found_.size());
+                }
+            });
+        }
+        take_out_found(begin_);
+    }
+
+    void take_out_found(Vector& x) const {
         for (const EigenPair<Scalar>& pair : found_) {
             const Scalar overlap =
                 inner_product(metric_, pair.vector.data(), x.data(), dim_, threads());
             add_scaled(metric_, pair.vector.data(), x.data(), -overlap, dim_, threads());
         }
+    }
+
+    template <class Part>
+    void each_run(Part&& part) const {
+        sum_over_runs<long double>(dim_, threads(), [&](std::int64_t first, std::int64_t last) {
+            part(first, last);
+            return 0.0;
+        });
+    }
+
+    void copy(const Vector& from, Vector& to) const {
+        each_run([&](std::int64_t first, std::int64_t last) {
+            std::copy(from.data() + first, from.data() + last, to.data() + first);
+        });
     }
 
     double norm(const Vector& x) const {
@@ -109,83 +135,41 @@ private:
         return dot;
     }
 
-    /// One step: y becomes the next x (unnormalized). `previous` and `current`: the norms s.
-    double step(Vector& x, Vector& y, double previous, double current, double* alpha) const {
-        const double keep = previous == 0.0 ? 0.0 : current / previous;
-        const double dot = multiply(x, y, 1.0 / current, keep);
-        const double a = alpha_known_ ? *alpha : dot / current;
-        *alpha = a;
-        return std::sqrt(
-            add_scaled(metric_, x.data(), y.data(), Scalar(-a / current), dim_, threads()));
+    /// Step j: y_, which holds x_{j-1}, becomes x_{j+1} and changes places with x_. Returns its
+    /// norm.
+    double step(std::size_t j, typename Kept::Stored* place) {
+        const double scale = 1.0 / norms_[j];
+        const double dot = multiply(x_, y_, scale, j == 0 ? 0.0 : norms_[j] / norms_[j - 1]);
+        if (j == alpha_.size()) {
+            alpha_.push_back(dot * scale);
+        }
+        const double square = add_scaled(
+            metric_, x_.data(), y_.data(), Scalar(-alpha_[j] * scale), dim_, threads(), place);
+        std::swap(x_, y_);
+        return std::sqrt(square);
     }
 
-    void prepare_kept() {
-        // Half of the budget at most: a second run costs time, running out costs the answer.
-        if (lease_ || !context_.memory) {
-            return;
-        }
-        const double bytes = static_cast<double>(size_ * sizeof(Scalar));
-        auto count = static_cast<std::size_t>(context_.memory->limit() / 2 / bytes);
-        count = std::min(count, most_kept);
-        for (; count >= 2; count = count * 3 / 4) {
-            if (auto lease = context_.memory->take(static_cast<double>(count) * bytes)) {
-                lease_.emplace(std::move(*lease));
-                capacity_ = count;
-                return;
-            }
-        }
-    }
-
-    void first_run(const Vector& begin, const std::function<Scalar(std::int64_t)>& start) {
-        prepare_kept();
-        x_.resize(size_);
-        y_.resize(size_);
+    /// Runs the recurrence from begin_ until `finished`; the vectors after the first are kept where
+    /// there is room.
+    void iterate() {
         alpha_.clear();
         beta_.clear();
-        norms_.clear();
-        kept_ = 0;
-        alpha_known_ = false;
-        fill_start(begin, start, x_);
-        double previous = 0.0;
-        double current = norm(x_);
+        copy(begin_, x_);
+        norms_ = {norm(x_)};
+        next_before_ = next_;
         while (true) {
-            keep(x_);
-            norms_.push_back(current);
-            alpha_.push_back(0.0);
-            const double next = step(x_, y_, previous, current, &alpha_.back());
-            std::swap(x_, y_);
-            previous = current;
-            current = next;
+            const std::size_t j = alpha_.size();
+            const double next = step(j, kept_.place(j));
             if (finished(next)) {
                 return;
             }
             beta_.push_back(next);
+            norms_.push_back(next);
         }
     }
 
-    void keep(const Vector& x) {
-        if (kept_ >= capacity_) {
-            return;
-        }
-        if (kept_ == slabs_.size() * per_slab()) {
-            slabs_.emplace_back(std::min(per_slab(), capacity_ - kept_) * size_);
-        }
-        Scalar* const place = saved(kept_);
-        sum_over_runs<long double>(dim_, threads(), [&](std::int64_t first, std::int64_t last) {
-            std::copy(x.data() + first, x.data() + last, place + first);
-            return 0.0;
-        });
-        ++kept_;
-    }
-
-    /// Kept vectors share allocations of this size or more, so that they lie in huge pages.
-    std::size_t per_slab() const {
-        constexpr std::size_t slab = std::size_t{1} << 26;
-        return std::max<std::size_t>(1, slab / (size_ * sizeof(Scalar)));
-    }
-    Scalar* saved(std::size_t j) {
-        return slabs_[j / per_slab()].data() + (j % per_slab()) * size_;
-    }
+    /// Whether all vectors of the run so far are there.
+    bool all_kept() const { return alpha_.size() <= kept_.capacity() + 1; }
 
     /// Whether the run ends with this beta; sets the Ritz values and the vector's coefficients.
     bool finished(double beta) {
@@ -195,23 +179,55 @@ private:
         const bool last = whole_space || broken_off || steps >= most_steps;
         // A test costs as much as a product in some thousand states.
         const int steps_between_tests = dim_ > 100000 ? 1 : 4;
-        if (!last && steps % steps_between_tests != 0) {
+        const bool kept_are_full = alpha_.size() == kept_.capacity() + 1;
+        if (!last && !kept_are_full && steps % steps_between_tests != 0) {
             return false;
         }
         const TridiagonalPairs pairs = lowest_of_tridiagonal(alpha_, beta_, 2);
         ritz_vector_ = pairs.vectors[0];
         const double residual = beta * std::abs(pairs.vectors[0].back());
-        next_ = op_.row_sum();
-        if (pairs.values.size() > 1) {
-            next_ = pairs.values[1] - beta * std::abs(pairs.vectors[1].back());
+        see_next(pairs, beta, whole_space);
+        if (steps == 1) {
+            first_residual_ = residual;
         }
-        if (last) {
+        if (last || residual <= goal()) {
             return true;
         }
         const double gap = next_ - pairs.values[0];
         const bool value_is_known =
             gap > 0 && residual <= gap / 4 && residual * residual <= gap * noise_ / 4;
-        return residual <= goal() || (aim_ == Aim::value && value_is_known);
+        return (aim_ == Aim::value && value_is_known) ||
+               (all_kept() && residual <= rounding_of_kept()) ||
+               (kept_are_full && another_run_will_do(residual));
+    }
+
+    /// Updates next_ from the second Ritz pair, once that tells something. A run that starts near
+    /// the lowest state may be over before: then what an earlier run saw still stands.
+    void see_next(const TridiagonalPairs& pairs, double beta, bool whole_space) {
+        double seen = op_.row_sum();
+        if (pairs.values.size() > 1) {
+            seen = pairs.values[1] - beta * std::abs(pairs.vectors[1].back());
+        }
+        next_ = next_before_;
+        if (seen > pairs.values[0] && (pairs.values.size() > 1 || whole_space)) {
+            next_ = std::isinf(next_before_) ? seen : std::min(seen, next_before_);
+        }
+    }
+
+    /// The residual that the rounding of the kept vectors leaves in their sum.
+    double rounding_of_kept() const {
+        double square = 0.0;
+        for (std::size_t j = 1; j < ritz_vector_.size(); ++j) {
+            square += ritz_vector_[j] * ritz_vector_[j];
+        }
+        return Kept::rounding * op_.row_sum() * std::sqrt(square);
+    }
+
+    /// Whether, at the pace so far, another run within the kept vectors reaches the goal: then it
+    /// is cheaper than going on and doing everything again for the vector.
+    bool another_run_will_do(double residual) const {
+        const double reached = std::log(first_residual_ / residual);
+        return reached > 0.0 && std::log(residual / goal()) <= 0.8 * reached;
     }
 
     /// Residual that counts as converged.
@@ -223,66 +239,45 @@ private:
                (aim_ == Aim::value && gap > 0 && pair.residual * pair.residual <= gap * noise_);
     }
 
-    /// sum_j c_j v_j.
-    Vector second_run(const Vector& begin, const std::function<Scalar(std::int64_t)>& start) {
-        const std::size_t steps = ritz_vector_.size();
-        Vector result(size_);
-        sum_over_runs<long double>(dim_, threads(), [&](std::int64_t first, std::int64_t last) {
-            std::fill(result.data() + first, result.data() + last, Scalar(0.0));
-            for (std::size_t j = 0; j < std::min(kept_, steps); ++j) {
-                const double factor = ritz_vector_[j] / norms_[j];
-                const Scalar* const kept = saved(j);
-                for (std::int64_t i = first; i < last; ++i) {
-                    result[static_cast<std::size_t>(i)] += factor * kept[i];
-                }
+    /// begin_ = sum_j c_j v_j from what is kept.
+    void sum_kept() {
+        std::vector<double> factors;
+        for (std::size_t j = 1; j < ritz_vector_.size(); ++j) {
+            factors.push_back(ritz_vector_[j] / norms_[j]);
+        }
+        kept_.add_to(begin_, ritz_vector_[0] / norms_[0], factors, threads());
+    }
+
+    /// The same by running the recurrence once more, from begin_.
+    void iterate_again() {
+        std::swap(begin_, x_);
+        each_run([&](std::int64_t first, std::int64_t last) {
+            for (std::int64_t i = first; i < last; ++i) {
+                begin_[static_cast<std::size_t>(i)] =
+                    ritz_vector_[0] / norms_[0] * x_[static_cast<std::size_t>(i)];
             }
-            return 0.0;
         });
-        if (kept_ >= steps) {
-            return result;
+        for (std::size_t j = 0; j + 1 < ritz_vector_.size(); ++j) {
+            step(j, nullptr);
+            add_scaled(metric_,
+                       x_.data(),
+                       begin_.data(),
+                       Scalar(ritz_vector_[j + 1] / norms_[j + 1]),
+                       dim_,
+                       threads());
         }
-        alpha_known_ = true;
-        std::size_t j = 0;
-        if (kept_ >= 2) {
-            j = kept_ - 1;
-            x_.assign(saved(j), saved(j) + size_);
-            y_.assign(saved(j - 1), saved(j - 1) + size_);
-        } else {
-            fill_start(begin, start, x_);
-        }
-        for (; j < steps; ++j) {
-            if (j >= kept_) {
-                add_scaled(metric_,
-                           x_.data(),
-                           result.data(),
-                           Scalar(ritz_vector_[j] / norms_[j]),
-                           dim_,
-                           threads());
-            }
-            if (j + 1 < steps) {
-                step(x_, y_, j == 0 ? 0.0 : norms_[j - 1], norms_[j], &alpha_[j]);
-                std::swap(x_, y_);
-            }
-        }
-        return result;
     }
 
     /// Normalizes, and measures with H itself.
     EigenPair<Scalar> measure(Vector vector) {
-        // What leaked in from the found vectors, by rounding, is taken out.
-        for (const EigenPair<Scalar>& other : found_) {
-            const Scalar overlap =
-                inner_product(metric_, other.vector.data(), vector.data(), dim_, threads());
-            add_scaled(metric_, other.vector.data(), vector.data(), -overlap, dim_, threads());
-        }
+        take_out_found(vector);  // what leaked in by rounding
         const double length = norm(vector);
         EigenPair<Scalar> pair;
         pair.vector = std::move(vector);
-        sum_over_runs<long double>(dim_, threads(), [&](std::int64_t first, std::int64_t last) {
+        each_run([&](std::int64_t first, std::int64_t last) {
             for (std::int64_t i = first; i < last; ++i) {
                 pair.vector[static_cast<std::size_t>(i)] /= length;
             }
-            return 0.0;
         });
         poll(context_);
         pair.value = op_.multiply(pair.vector.data(), y_.data(), 1.0, 0.0);
@@ -304,18 +299,17 @@ private:
     std::size_t size_;
     double noise_;
 
+    Vector begin_;  ///< the run's x_0, then the sum
     Vector x_;
     Vector y_;
-    std::vector<Vector> slabs_;  ///< x_0 ... x_{kept-1} of the first run
-    std::size_t kept_ = 0;
-    std::size_t capacity_ = 0;
-    std::optional<MemoryBudget::Lease> lease_;
+    Kept kept_;  ///< x_1, x_2, ... of a run
     std::vector<double> alpha_;
     std::vector<double> beta_;
     std::vector<double> norms_;  ///< s_j
     std::vector<double> ritz_vector_;
-    double next_ = 0.0;
-    bool alpha_known_ = false;
+    double next_ = -std::numeric_limits<double>::infinity();
+    double next_before_ = 0.0;  ///< next_ after the earlier runs
+    double first_residual_ = 0.0;
 };
 
 }  // namespace
@@ -324,7 +318,7 @@ template <class Scalar>
 EigenPair<Scalar> lowest_outside(const LinearOperator<Scalar>& op,
                                  const std::vector<EigenPair<Scalar>>& found,
                                  Aim aim,
-                                 const std::function<Scalar(std::int64_t)>& start,
+                                 const StartFiller<Scalar>& start,
                                  const Context& context) {
     return Search<Scalar>(op, found, aim, context).run(start);
 }
@@ -332,13 +326,13 @@ EigenPair<Scalar> lowest_outside(const LinearOperator<Scalar>& op,
 template EigenPair<double> lowest_outside(const LinearOperator<double>&,
                                           const std::vector<EigenPair<double>>&,
                                           Aim,
-                                          const std::function<double(std::int64_t)>&,
+                                          const StartFiller<double>&,
                                           const Context&);
 template EigenPair<std::complex<double>> lowest_outside(
     const LinearOperator<std::complex<double>>&,
     const std::vector<EigenPair<std::complex<double>>>&,
     Aim,
-    const std::function<std::complex<double>(std::int64_t)>&,
+    const StartFiller<std::complex<double>>&,
     const Context&);
 
 }  // namespace chainmark::sector

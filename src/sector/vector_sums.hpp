@@ -1,6 +1,7 @@
 #pragma once
 
 #include <algorithm>
+#include <array>
 #include <complex>
 #include <cstdint>
 #include <vector>
@@ -20,6 +21,28 @@ inline double real_product(double a, double b) {
 }
 inline double real_product(const std::complex<double>& a, const std::complex<double>& b) {
     return a.real() * b.real() + a.imag() * b.imag();
+}
+
+/// Sum of term(i) for i = first ... last-1 in eight interleaved partial sums, which the processor
+/// adds side by side.
+template <class Sum, class Term>
+Sum sum_in_lanes(std::int64_t first, std::int64_t last, Term&& term) {
+    constexpr std::int64_t n_lanes = 8;
+    std::array<Sum, n_lanes> lanes{};
+    std::int64_t i = first;
+    for (; i + n_lanes <= last; i += n_lanes) {
+        for (std::int64_t lane = 0; lane < n_lanes; ++lane) {
+            lanes[static_cast<std::size_t>(lane)] += term(i + lane);
+        }
+    }
+    for (; i < last; ++i) {
+        lanes[0] += term(i);
+    }
+    Sum sum(0);
+    for (const Sum& lane : lanes) {
+        sum += lane;
+    }
+    return sum;
 }
 
 /// Sum of part(first, last) over runs of components that cover 0 ... dim-1. The parts may write
@@ -48,15 +71,13 @@ template <class Scalar>
 Scalar inner_product(
     const Metric& metric, const Scalar* x, const Scalar* y, std::int64_t dim, int threads) {
     const auto part = [&](std::int64_t first, std::int64_t last) {
-        Scalar sum(0);
-        for (std::int64_t i = first; i < last; ++i) {
+        return sum_in_lanes<Scalar>(first, last, [&](std::int64_t i) {
             if constexpr (std::is_same_v<Scalar, double>) {
-                sum += metric.weight(i) * x[i] * y[i];
+                return metric.weight(i) * x[i] * y[i];
             } else {
-                sum += metric.weight(i) * std::conj(x[i]) * y[i];
+                return metric.weight(i) * std::conj(x[i]) * y[i];
             }
-        }
-        return sum;
+        });
     };
     if constexpr (std::is_same_v<Scalar, double>) {
         return static_cast<double>(sum_over_runs<long double>(dim, threads, part));
@@ -65,20 +86,26 @@ Scalar inner_product(
     }
 }
 
-/// y += factor x; returns ||y||^2 of the new y in the metric.
-template <class Scalar>
+/// y += factor x; returns ||y||^2 of the new y in the metric. A copy of the new y is written to
+/// `copy` unless that is null.
+template <class Scalar, class Stored = Scalar>
 double add_scaled(const Metric& metric,
                   const Scalar* x,
                   Scalar* y,
                   Scalar factor,
                   std::int64_t dim,
-                  int threads) {
+                  int threads,
+                  Stored* copy = nullptr) {
     return static_cast<double>(
         sum_over_runs<long double>(dim, threads, [&](std::int64_t first, std::int64_t last) {
-            double sum = 0.0;
-            for (std::int64_t i = first; i < last; ++i) {
+            const double sum = sum_in_lanes<double>(first, last, [&](std::int64_t i) {
                 y[i] += factor * x[i];
-                sum += metric.weight(i) * real_product(y[i], y[i]);
+                return metric.weight(i) * real_product(y[i], y[i]);
+            });
+            if (copy != nullptr) {
+                std::transform(y + first, y + last, copy + first, [](const Scalar& number) {
+                    return static_cast<Stored>(number);
+                });
             }
             return sum;
         }));
