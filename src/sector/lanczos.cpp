@@ -64,6 +64,10 @@ public:
             } else {
                 iterate_again();
             }
+            take_out_found(begin_);  // what leaked in by rounding
+            if (cut_short_) {
+                continue;
+            }
             EigenPair<Scalar> pair = measure(std::move(begin_));
             if (good_enough(pair)) {
                 return pair;
@@ -157,6 +161,7 @@ private:
         copy(begin_, x_);
         norms_ = {norm(x_)};
         next_before_ = next_;
+        cut_short_ = false;
         while (true) {
             const std::size_t j = alpha_.size();
             const double next = step(j, kept_.place(j));
@@ -196,9 +201,14 @@ private:
         const double gap = next_ - pairs.values[0];
         const bool value_is_known =
             gap > 0 && residual <= gap / 4 && residual * residual <= gap * noise_ / 4;
-        return (aim_ == Aim::value && value_is_known) ||
-               (all_kept() && residual <= rounding_of_kept()) ||
-               (kept_are_full && another_run_will_do(residual));
+        if ((aim_ == Aim::value && value_is_known) ||
+            (all_kept() && residual <= rounding_of_kept())) {
+            return true;
+        }
+        // Starting anew from what is kept costs about two steps: much less than running everything
+        // once more for the vector, as long as a run gets ahead.
+        cut_short_ = kept_are_full && residual * std::exp(1.0) <= first_residual_;
+        return cut_short_;
     }
 
     /// Updates next_ from the second Ritz pair, once that tells something. A run that starts near
@@ -221,13 +231,6 @@ private:
             square += ritz_vector_[j] * ritz_vector_[j];
         }
         return Kept::rounding * op_.row_sum() * std::sqrt(square);
-    }
-
-    /// Whether, at the pace so far, another run within the kept vectors reaches the goal: then it
-    /// is cheaper than going on and doing everything again for the vector.
-    bool another_run_will_do(double residual) const {
-        const double reached = std::log(first_residual_ / residual);
-        return reached > 0.0 && std::log(residual / goal()) <= 0.8 * reached;
     }
 
     /// Residual that counts as converged.
@@ -270,7 +273,6 @@ private:
 
     /// Normalizes, and measures with H itself.
     EigenPair<Scalar> measure(Vector vector) {
-        take_out_found(vector);  // what leaked in by rounding
         const double length = norm(vector);
         EigenPair<Scalar> pair;
         pair.vector = std::move(vector);
@@ -308,8 +310,9 @@ private:
     std::vector<double> norms_;  ///< s_j
     std::vector<double> ritz_vector_;
     double next_ = -std::numeric_limits<double>::infinity();
-    double next_before_ = 0.0;  ///< next_ after the earlier runs
-    double first_residual_ = 0.0;
+    double next_before_ = 0.0;     ///< next_ after the earlier runs
+    double first_residual_ = 0.0;  ///< after the first step of the run
+    bool cut_short_ = false;       ///< the run ended since the kept vectors were full
 };
 
 }  // namespace

@@ -63,7 +63,7 @@ public:
           row_sum_(rows.op().row_sum()),
           n_strings_(rows.op().n_strings()) {
         // Enough pieces to share, and none so large that a stop request waits for it.
-        piece_ = std::clamp<std::int64_t>(dim_ / 64, OrbitRows<Scalar>::rows_at_once, 1 << 16);
+        piece_ = std::clamp<std::int64_t>(dim_ / 64, OrbitRows<Scalar>::rows_at_once, 1 << 18);
         piece_ = (piece_ + OrbitRows<Scalar>::rows_at_once - 1) / OrbitRows<Scalar>::rows_at_once *
                  OrbitRows<Scalar>::rows_at_once;
     }
@@ -255,11 +255,28 @@ std::unique_ptr<LinearOperator<Scalar>> make_stored(const OrbitRows<Scalar>& row
 
 template <class Scalar>
 double stored_bytes(const OrbitRows<Scalar>& rows) {
-    // At most half of the strings of an exchange act on a configuration.
-    const double per_row = static_cast<double>(rows.op().most_hops()) / 2;
+    // The mean number of elements in a row, from some ten thousand rows all over the basis.
+    constexpr std::int64_t n_samples = 64;
+    constexpr std::int64_t sample = 256;
+    constexpr double margin = 1.05;
+    const std::int64_t dim = rows.basis().dim();
+    double counted = 0.0;
+    double elements = 0.0;
+    for (std::int64_t s = 0; s < n_samples; ++s) {
+        const std::int64_t first = dim * s / n_samples;
+        const std::int64_t last = std::min(first + sample, dim * (s + 1) / n_samples);
+        counted += static_cast<double>(last - first);
+        for_each_row(rows,
+                     first,
+                     last,
+                     [&](std::int64_t /*row*/,
+                         const std::uint32_t* /*column*/,
+                         const std::uint32_t* /*code*/,
+                         int count) { elements += count; });
+    }
+    const double per_row = margin * elements / std::max(counted, 1.0);
     const double diagonal = rows.op().diagonal().empty() ? 0.0 : 8.0;
-    return static_cast<double>(rows.basis().dim()) *
-           (per_row * (fits_in_32_bits(rows) ? 4 : 8) + 2 + diagonal);
+    return static_cast<double>(dim) * (per_row * (fits_in_32_bits(rows) ? 4 : 8) + 2 + diagonal);
 }
 
 template std::unique_ptr<LinearOperator<double>> make_matrix_free(const OrbitRows<double>&,

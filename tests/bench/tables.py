@@ -59,7 +59,8 @@ TABLES = [
          ("halves traffic", "halves_traffic", percent),
          ("CSR's bytes / halves", "halves_as_csr", percent)]),
     ("ground_state", "Ground state, full Sz = 0 sector, to 1e-12 (s). Ours: all in, with vector; "
-     "the others: the solution alone, `Lanczos` without vector", [
+     "from a random vector and from the guess that a ring gets; the others: the solution alone, "
+     "`Lanczos` without vector", [
          ("ours", "ours_s", seconds),
          ("residual", "ours_residual", tiny),
          ("CSR assembly", "assembly_s", seconds),
@@ -86,19 +87,23 @@ TABLES = [
         ("allowed", "allowed_bytes", lambda value: gigabytes(value) if value else "free"),
         ("error (Bethe)", "error", tiny),
         ("bound", "bound", tiny)]),
-    ("sector", "Growth: the ground state's sector with all symmetries", [
+    ("sector", "Growth: the ground state's sector with all symmetries. Solve: the ground energy from the operator", [
         ("states", "states", number),
         ("elements", "elements", number),
         ("enumerate, s", "enumerate_s", seconds),
         ("store, s", "build_s", seconds),
+        ("solve, s", "solve_s", seconds),
         ("stored product, s", "stored_s", seconds),
+        ("ns / state", "stored_ns_per_state", ratio),
         ("ns / element", "stored_ns", ratio),
         ("matrix-free, ns / element", "computed_ns", ratio),
         ("basis, bytes / state", "basis_bytes_per_state", ratio),
         ("elements, bytes / state", "stored_bytes_per_state", ratio)]),
     ("spectrum", "Complete spectrum", [
         ("levels", "levels", number),
-        ("s", "seconds", seconds)]),
+        ("s", "seconds", seconds),
+        ("with thermal averages at 1 temperature", "one_temperature_s", seconds),
+        ("at 200", "temperatures_s", seconds)]),
 ]
 
 

@@ -1,10 +1,13 @@
 #include "bench/whole.hpp"
 
 #include <cmath>
+#include <stdexcept>
 
 #include <fmt/format.h>
 
 #include "bench/timing.hpp"
+#include "chainmark/reference/route.hpp"
+#include "chainmark/sector/route.hpp"
 #include "chainmark/sector/solution.hpp"
 #include "published/bethe.hpp"
 
@@ -26,15 +29,40 @@ void measure_ground_energy(benchmark::State& state, const Ring& ring, double mem
 
 void measure_spectrum(benchmark::State& state, const Ring& ring) {
     const Problem problem = problem_of(ring);
+    const auto curve = [&](int temperatures) {
+        Batch batch;
+        for (const QuantityId id :
+             {QuantityId::free_energy, QuantityId::entropy, QuantityId::specific_heat}) {
+            batch.queries.push_back({&spec_of(id), {}, spec_of(id).name});
+        }
+        for (int i = 0; i < temperatures; ++i) {
+            batch.problems.push_back(problem);
+            batch.problems.back().temperature = 0.01 * (i + 1);
+        }
+        for (const auto& answers : sector_route().evaluate(batch, all_cores())) {
+            for (const Answer& answer : answers) {
+                if (!std::holds_alternative<Reference>(answer)) {
+                    throw std::logic_error("a temperature has no answer");
+                }
+            }
+        }
+    };
     while (state.KeepRunning()) {
         std::size_t levels = 0;
-        const double seconds = seconds_of([&] {
-            sector::Solution solution(problem, all_cores());
-            levels = solution.all_levels(problem).size();
-        });
-        state.SetIterationTime(seconds);
-        state.counters["seconds"] = seconds;
+        const std::vector<double> seconds =
+            in_turn(1,
+                    0.0,
+                    {[&] {
+                         sector::Solution solution(problem, all_cores());
+                         levels = solution.all_levels(problem).size();
+                     },
+                     [&] { curve(1); },
+                     [&] { curve(200); }});
+        state.SetIterationTime(seconds[0]);
+        state.counters["seconds"] = seconds[0];
         state.counters["levels"] = static_cast<double>(levels);
+        state.counters["one_temperature_s"] = seconds[1];
+        state.counters["temperatures_s"] = seconds[2];
     }
 }
 

@@ -238,7 +238,7 @@ TEST_CASE("XX rings: the four lowest levels of Sz = 0 are E0 and three copies of
     // E0 = -1/sin(pi/L). E1 is fourfold: from the free fermions' sums over occupied momenta (Lieb,
     // Schultz, Mattis, Ann. Phys. (NY) 16, 407 (1961)) a fermion goes from an outermost occupied
     // momentum to an innermost free one: E1 = E0 + 2 sin(pi/L).
-    for (const int length : {16, 18, 20}) {
+    for (const int length : {16, 18, 20, 22, 24}) {
         const double ground = -1 / std::sin(pi / length);
         const double first = ground + 2 * std::sin(pi / length);
         const Reference found = ask(sector_route(),
