@@ -2,7 +2,6 @@
 /// of the ground energy with all symmetries. A process of its own, so that the peak is its own.
 
 #include <cstdlib>
-#include <fstream>
 #include <stdexcept>
 
 #include <fmt/format.h>
@@ -14,19 +13,6 @@
 namespace chainmark::bench {
 namespace {
 
-/// The largest resident set so far (Linux).
-double peak_bytes() {
-    std::ifstream status("/proc/self/status");
-    std::string word;
-    double kibibytes = 0.0;
-    while (status >> word) {
-        if (word == "VmHWM:" && status >> kibibytes) {
-            return 1024 * kibibytes;
-        }
-    }
-    throw std::runtime_error("no VmHWM in /proc/self/status");
-}
-
 int run(const Ring& ring, double memory) {
     const Context context = memory > 0.0 ? all_cores(memory) : all_cores();
     sector::GroundEnergy found;
@@ -34,7 +20,11 @@ int run(const Ring& ring, double memory) {
         const Problem problem = problem_of(ring);
         found = sector::Solution(problem, context).ground_energy(problem);
     });
-    fmt::print("{:.6g} {:.17g} {:.3g} {:.0f}\n", seconds, found.energy, found.bound, peak_bytes());
+    fmt::print("{:.6g} {:.17g} {:.3g} {:.0f}\n",
+               seconds,
+               found.energy,
+               found.bound,
+               memory_of_process("VmHWM:"));
     return 0;
 }
 

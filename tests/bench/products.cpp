@@ -4,8 +4,6 @@
 #include <cmath>
 #include <stdexcept>
 
-#include <malloc.h>
-
 #include "bench/csr.hpp"
 #include "bench/stream.hpp"
 #include "bench/timing.hpp"
@@ -68,11 +66,6 @@ Task product(const Operator& op, const BigVector<double>& x, BigVector<double>& 
     return [&] { op.multiply(x.data(), y.data(), 1.0, 0.0); };
 }
 
-double bytes_in_use() {
-    const struct mallinfo2 info = mallinfo2();
-    return static_cast<double>(info.uordblks + info.hblkhd);
-}
-
 }  // namespace
 
 void measure_full_product(benchmark::State& state, const Ring& ring) {
@@ -127,15 +120,15 @@ void measure_symmetric_sector(benchmark::State& state, const Ring& ring) {
     const Context context = all_cores();
     const sector::SectorHamiltonian h = hamiltonian_of(ring);
     const sector::Sector ground = ground_sector(h);
-    const double before = bytes_in_use();
+    const double before = memory_of_process("VmRSS:");
     std::optional<OrbitBasis> basis;
     const double enumerate =
         seconds_of([&] { basis.emplace(ground.group, ground.label, context); });
-    const double after_basis = bytes_in_use();
+    const double after_basis = memory_of_process("VmRSS:");
     const OrbitRows<double> rows(*basis, h.packed);
     std::unique_ptr<Operator> stored;
     const double build = seconds_of([&] { stored = sector::make_stored(rows, context); });
-    const double after_elements = bytes_in_use();
+    const double after_elements = memory_of_process("VmRSS:");
     const auto computed = sector::make_matrix_free(rows, context);
     const auto dim = static_cast<double>(basis->dim());
     const double elements = count_elements(rows);

@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <chrono>
 #include <cstdio>
+#include <fstream>
 #include <sstream>
 #include <stdexcept>
 #include <thread>
@@ -34,6 +35,18 @@ double seconds_of(const Task& task) {
     const auto start = std::chrono::steady_clock::now();
     task();
     return std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
+}
+
+double memory_of_process(const std::string& line) {
+    std::ifstream status("/proc/self/status");
+    std::string word;
+    double kibibytes = 0.0;
+    while (status >> word) {
+        if (word == line && status >> kibibytes) {
+            return 1024 * kibibytes;
+        }
+    }
+    throw std::runtime_error("no " + line + " in /proc/self/status");
 }
 
 std::vector<double> in_turn(int rounds, double least, const std::vector<Task>& tasks) {

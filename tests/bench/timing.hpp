@@ -16,6 +16,10 @@ double seconds_of(const Task& task);
 /// passed, after one call that is not measured; with least = 0 it is called once.
 std::vector<double> in_turn(int rounds, double least, const std::vector<Task>& tasks);
 
+/// A line of the system's account of this process's memory in bytes (Linux): "VmRSS:" what lies in
+/// memory now, "VmHWM:" the most so far. Throws std::runtime_error where there is none.
+double memory_of_process(const std::string& line);
+
 /// The numbers that a program prints. Throws std::runtime_error where it fails.
 std::vector<double> numbers_from(const std::string& command);
 
