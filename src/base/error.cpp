@@ -32,6 +32,8 @@ std::string error_id(ErrorCode code) {
             return "not_hermitian";
         case ErrorCode::bad_option:
             return "bad_option";
+        case ErrorCode::over_memory:
+            return "over_memory";
     }
     return "error";
 }

@@ -21,6 +21,7 @@ enum class ErrorCode {
     bad_chain,
     not_hermitian,
     bad_option,
+    over_memory,
 };
 
 /// Stable identifier of a code, e.g. "unknown_key".

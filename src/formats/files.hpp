@@ -12,7 +12,9 @@ namespace chainmark {
 /// folder that may. Touches nothing. Fails with `cannot_write`.
 Result<void> check_writable(const std::string& path);
 
-/// Replaces the content of `path`. Fails with `cannot_write`, also where the disk is full.
+/// Replaces the content of `path`, all of it or nothing: it is written beside and then renamed, so
+/// that no reader ever sees half a file, and a full disk leaves the old one. Devices, and files in
+/// folders that take no new ones, are written in place. Fails with `cannot_write`.
 Result<void> write_file(const std::string& path, std::string_view content);
 
 }  // namespace chainmark
