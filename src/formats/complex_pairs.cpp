@@ -27,7 +27,7 @@ Result<Array> complex_like(const Array& model, std::size_t count, const Context&
     result.single_precision = model.single_precision;
     result.shape = model.shape;
     result.memory = MemoryShare(context);
-    const Result<void> taken = result.memory.take(
+    Result<void> taken = result.memory.take(
         16.0 * static_cast<double>(count), model.source, "an array of complex numbers");
     if (!taken) {
         return tl::unexpected(taken.error());

@@ -148,7 +148,7 @@ private:
             std::vector<CellSpan> cells;
             const std::size_t most = 2 * sizeof(CellSpan) * (comment_.end - comment_.begin + 1);
             MemoryShare room(context_);
-            const Result<void> done =
+            Result<void> done =
                 room.take(static_cast<double>(most), text_.source, "a comment line");
             if (done && header.cut(cells) && cells.size() == first_row_.size()) {
                 return set_names(cells);
@@ -196,7 +196,7 @@ private:
             std::min(static_cast<double>(breaks) * static_cast<double>(names_.size()),
                      static_cast<double>(rest.size() + 1));
         const double room = cells + static_cast<double>(names_.size());
-        const Result<void> taken = memory_.take(room * sizeof(CellSpan), text_.source, "the table");
+        Result<void> taken = memory_.take(room * sizeof(CellSpan), text_.source, "the table");
         if (taken) {
             cells_.reserve(static_cast<std::size_t>(room));
             cells_.insert(cells_.end(), first_row_.begin(), first_row_.end());

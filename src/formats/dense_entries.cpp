@@ -92,7 +92,7 @@ private:
                             "integers up to 2^53");
                     }
                 }
-                const Result<void> added =
+                Result<void> added =
                     sink.add(row, column, std::complex<double>(convert(values[at])));
                 if (!added) {
                     return added;
@@ -169,7 +169,7 @@ private:
 }  // namespace
 
 Result<std::unique_ptr<EntrySource>> entries_of(Array array) {
-    const Result<void> checked = check_axes(array.source, array.shape);
+    Result<void> checked = check_axes(array.source, array.shape);
     if (!checked) {
         return tl::unexpected(checked.error());
     }
@@ -189,7 +189,7 @@ Result<std::unique_ptr<EntrySource>> open_npy_entries(const std::string& path) {
         return refuse(
             ErrorCode::wrong_type, {.source = path}, "the elements are strings", "numbers");
     }
-    const Result<void> checked = check_axes(path, header->shape);
+    Result<void> checked = check_axes(path, header->shape);
     if (!checked) {
         return tl::unexpected(checked.error());
     }

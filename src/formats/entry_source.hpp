@@ -13,7 +13,7 @@
 namespace chainmark {
 
 /// One element of a matrix; indices count from 0.
-struct Entry {
+struct MatrixEntry {
     std::int64_t row = 0;
     std::int64_t column = 0;
     std::complex<double> value;
@@ -23,7 +23,7 @@ struct Entry {
 /// whole.
 class EntrySource {
 public:
-    using Each = std::function<void(std::span<const Entry>)>;
+    using Each = std::function<void(std::span<const MatrixEntry>)>;
 
     EntrySource() = default;
     EntrySource(const EntrySource&) = delete;
@@ -61,7 +61,7 @@ private:
 class EntryBlock {
 public:
     explicit EntryBlock(const EntrySource::Each& each) : each_(each) { block_.reserve(capacity); }
-    void add(const Entry& entry) {
+    void add(const MatrixEntry& entry) {
         block_.push_back(entry);
         if (block_.size() == capacity) {
             flush();
@@ -77,7 +77,7 @@ public:
 private:
     static constexpr std::size_t capacity = 4096;
     const EntrySource::Each& each_;
-    std::vector<Entry> block_;
+    std::vector<MatrixEntry> block_;
 };
 
 /// A matrix from a file: Matrix Market (.mtx, .mtx.gz, told by its first line), a matrix of NPY,

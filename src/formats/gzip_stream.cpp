@@ -69,7 +69,7 @@ Result<double> unpacked_size(const std::string& path, double most, const Context
     double size = 0;
     while (size <= most) {
         poll(context);
-        const Result<std::size_t> got = (*stream)->read(piece);
+        Result<std::size_t> got = (*stream)->read(piece);
         if (!got) {
             return tl::unexpected(got.error());
         }
@@ -110,7 +110,7 @@ Result<void> fill(Text& text, const std::string& path, const Context& context) {
     while (done < text.size) {
         poll(context);
         const std::size_t wanted = std::min(piece, text.size - done);
-        const Result<std::size_t> got = (*stream)->read({text.bytes.get() + done, wanted});
+        Result<std::size_t> got = (*stream)->read({text.bytes.get() + done, wanted});
         if (!got) {
             return tl::unexpected(got.error());
         }
@@ -120,7 +120,7 @@ Result<void> fill(Text& text, const std::string& path, const Context& context) {
         }
     }
     char more = 0;
-    const Result<std::size_t> end = (*stream)->read({&more, 1});
+    Result<std::size_t> end = (*stream)->read({&more, 1});
     if (done < text.size || !end || *end != 0) {
         return refuse(
             ErrorCode::cannot_read, {.source = path}, "the file changed while it was being read");
@@ -163,13 +163,13 @@ Result<Text> read_text(const std::string& path, const Context& context) {
     stream->reset();
     double bytes = static_cast<double>(known.value_or(0));
     if (!known) {
-        const Result<double> unpacked = unpacked_size(path, text.memory.limit(), context);
+        Result<double> unpacked = unpacked_size(path, text.memory.limit(), context);
         if (!unpacked) {
             return tl::unexpected(unpacked.error());
         }
         bytes = *unpacked;
     }
-    const Result<void> taken = text.memory.take(bytes + 1, path, "the text");
+    Result<void> taken = text.memory.take(bytes + 1, path, "the text");
     if (!taken) {
         return tl::unexpected(taken.error());
     }

@@ -40,7 +40,7 @@ Result<std::string> read_all(ByteStream& stream) {
     while (all.size() < largest) {
         const std::size_t before = all.size();
         all.resize(before + piece);
-        const Result<std::size_t> got = stream.read(std::span(all).subspan(before));
+        Result<std::size_t> got = stream.read(std::span(all).subspan(before));
         if (!got) {
             return tl::unexpected(got.error());
         }
@@ -126,14 +126,14 @@ Result<Array> read_hdf5(const std::string& path, const std::string& name, const 
         return tl::unexpected(stream.error());
     }
     char kind = 0;
-    const Result<std::size_t> got = (*stream)->read({&kind, 1});
+    Result<std::size_t> got = (*stream)->read({&kind, 1});
     if (!got) {
         return tl::unexpected(got.error());
     }
     if (*got == 1 && kind == 'A') {
         Result<Array> array = read_npy(**stream, context);
         // after the last element the child may still have died
-        const Result<std::size_t> end = array ? (*stream)->read({&kind, 1}) : got;
+        Result<std::size_t> end = array ? (*stream)->read({&kind, 1}) : got;
         if (!end) {
             return tl::unexpected(end.error());
         }

@@ -158,7 +158,7 @@ Result<Text> with_words_replaced(Text text, const Context& context) {
                  .bytes = nullptr,
                  .size = static_cast<std::size_t>(static_cast<std::int64_t>(text.size) + growth),
                  .memory = MemoryShare(context)};
-    const Result<void> taken =
+    Result<void> taken =
         changed.memory.take(static_cast<double>(changed.size + 1), text.source, "the text");
     if (!taken) {
         return tl::unexpected(taken.error());
@@ -215,7 +215,7 @@ Result<JsonDocument> read_json(const std::string& path, const Context& context) 
     const double values = static_cast<double>(survey->scalars + survey->containers);
     const double bytes = 256.0 * values + 4.0 * static_cast<double>(survey->string_bytes);
     JsonDocument document{.memory = MemoryShare(context), .root = {}};
-    const Result<void> taken = document.memory.take(bytes, path, "the document");
+    Result<void> taken = document.memory.take(bytes, path, "the document");
     if (!taken) {
         return tl::unexpected(taken.error());
     }

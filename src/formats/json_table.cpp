@@ -302,7 +302,7 @@ Result<Table> assembled(Text text, TableEvents& events, MemoryShare memory) {
     drop_unused_columns(events);
     const std::size_t width = events.names.size();
     const double count = static_cast<double>(width) * static_cast<double>(events.rows());
-    const Result<void> taken = memory.take(count * sizeof(CellSpan), text.source, "the table");
+    Result<void> taken = memory.take(count * sizeof(CellSpan), text.source, "the table");
     if (!taken) {
         return tl::unexpected(taken.error());
     }
@@ -350,7 +350,7 @@ Result<Table> read_json_table(const std::string& path, const Context& context) {
     MemoryShare memory(context);
     MemoryShare passing(context);
     const auto scalars = static_cast<std::size_t>(survey->scalars);
-    const Result<void> taken =
+    Result<void> taken =
         passing.take(static_cast<double>(scalars * sizeof(Placed)), path, "the cells");
     if (!taken) {
         return tl::unexpected(taken.error());

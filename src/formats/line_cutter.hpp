@@ -65,8 +65,7 @@ public:
                 skip_line();
                 return {};
             }
-            const Result<CellSpan> cell =
-                at_ < end_ && bytes_[at_] == '"' ? quoted_cell() : plain_cell();
+            Result<CellSpan> cell = at_ < end_ && bytes_[at_] == '"' ? quoted_cell() : plain_cell();
             if (!cell) {
                 return tl::unexpected(cell.error());
             }

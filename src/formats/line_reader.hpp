@@ -27,7 +27,7 @@ public:
                 count();
                 return true;
             }
-            const Result<bool> more = refill();
+            Result<bool> more = refill();
             if (!more) {
                 return more;
             }
@@ -61,8 +61,7 @@ private:
         std::memmove(buffer_.data(), buffer_.data() + at_, end_ - at_);
         end_ -= at_;
         at_ = 0;
-        const Result<std::size_t> got =
-            stream_->read({buffer_.data() + end_, buffer_.size() - end_});
+        Result<std::size_t> got = stream_->read({buffer_.data() + end_, buffer_.size() - end_});
         if (!got) {
             return tl::unexpected(got.error());
         }

@@ -45,7 +45,7 @@ public:
         OrderWatch order;
         EntryBlock block(each);
         if (done) {
-            done = run(context, [&](const Entry& entry, int /*line*/) {
+            done = run(context, [&](const MatrixEntry& entry, int /*line*/) {
                 order.see(entry.row, entry.column);
                 give(entry, block);
             });
@@ -74,11 +74,11 @@ private:
             return refuse(ErrorCode::cannot_read, {.source = path_}, "the file has changed");
         }
         StoredEntries stored(lines, *header);
-        Entry entry;
+        MatrixEntry entry;
         constexpr std::int64_t often = 1 << 18;
         double reported = 0;
         for (std::int64_t count = 1;; ++count) {
-            const Result<bool> more = stored.next(entry);
+            Result<bool> more = stored.next(entry);
             if (!more) {
                 return tl::unexpected(more.error());
             }
@@ -107,7 +107,7 @@ private:
         if (header_.symmetry == Symmetry::general || !header_.coordinate || surveyed_) {
             return {};
         }
-        Result<void> done = run(context, [this](const Entry& entry, int line) {
+        Result<void> done = run(context, [this](const MatrixEntry& entry, int line) {
             triangles_.lower = triangles_.lower || entry.row > entry.column;
             if (entry.row < entry.column && !triangles_.upper) {
                 triangles_.upper = true;
@@ -129,13 +129,13 @@ private:
         return done;
     }
 
-    void give(const Entry& entry, EntryBlock& block) const {
+    void give(const MatrixEntry& entry, EntryBlock& block) const {
         block.add(entry);
         if (header_.symmetry == Symmetry::general || triangles_.both() ||
             entry.row == entry.column) {
             return;
         }
-        Entry mirrored{entry.column, entry.row, entry.value};
+        MatrixEntry mirrored{entry.column, entry.row, entry.value};
         if (header_.symmetry == Symmetry::skew) {
             mirrored.value = -mirrored.value;
         } else if (header_.symmetry == Symmetry::hermitian) {
@@ -157,7 +157,7 @@ private:
         }
         Context silent = context;
         silent.progress = nullptr;  // a pass that was not announced
-        const Result<void> done = run(silent, [&](const Entry& entry, int /*line*/) {
+        Result<void> done = run(silent, [&](const MatrixEntry& entry, int /*line*/) {
             places->add(entry.row, entry.column);
         });
         const std::int64_t repeated = done ? places->repeated() : 0;

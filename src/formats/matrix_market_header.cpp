@@ -64,7 +64,7 @@ Result<void> look_up(const LineReader& lines,
 
 Result<void> read_banner(LineReader& lines, MatrixMarketHeader& header) {
     std::string_view line;
-    const Result<bool> any = lines.next(line);
+    Result<bool> any = lines.next(line);
     if (!any) {
         return tl::unexpected(any.error());
     }
@@ -126,7 +126,7 @@ double array_entries(const MatrixMarketHeader& header) {
 Result<void> read_sizes(LineReader& lines, MatrixMarketHeader& header) {
     constexpr double most = 4e15;  // beyond any file
     std::string_view line;
-    const Result<bool> any = next_content(lines, line);
+    Result<bool> any = next_content(lines, line);
     if (!any) {
         return tl::unexpected(any.error());
     }
@@ -182,7 +182,7 @@ std::string_view next_word(std::string_view& line) {
 
 Result<bool> next_content(LineReader& lines, std::string_view& line) {
     while (true) {
-        const Result<bool> any = lines.next(line);
+        Result<bool> any = lines.next(line);
         if (!any || !*any) {
             return any;
         }

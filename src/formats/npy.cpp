@@ -34,6 +34,7 @@ template <class T, class Stored>
 bool convert(Stored value, T& to) {
     if constexpr (std::is_integral_v<Stored>) {
         if constexpr (std::is_same_v<T, std::int64_t>) {
+            // A number of eight bits, no character. NOLINTNEXTLINE(bugprone-signed-char-misuse)
             to = static_cast<std::int64_t>(value);
             return std::in_range<std::int64_t>(value);
         } else {
@@ -118,7 +119,7 @@ Result<std::vector<T>> read_values(ByteStream& stream,
                                    const NpyHeader& header,
                                    MemoryShare& memory,
                                    const Context& context) {
-    const Result<void> taken =
+    Result<void> taken =
         memory.take(static_cast<double>(header.count) * static_cast<double>(sizeof(T)),
                     stream.source(),
                     "the array of " + shape_text(header.shape));
@@ -135,7 +136,7 @@ Result<std::vector<T>> read_values(ByteStream& stream,
         const std::size_t size = std::min(piece, count - first);
         const std::span<T> to =
             scattered ? std::span(buffer).first(size) : std::span(values).subspan(first, size);
-        const Result<void> read = read_elements(stream, header, to);
+        Result<void> read = read_elements(stream, header, to);
         if (!read) {
             return tl::unexpected(read.error());
         }
@@ -155,7 +156,7 @@ Result<void> store_integers(Array& array, std::vector<std::int64_t> integers) {
         array.values = std::move(integers);
         return {};
     }
-    const Result<void> taken =
+    Result<void> taken =
         array.memory.take(8.0 * static_cast<double>(integers.size()), array.source, "the array");
     if (taken) {
         array.values = std::vector<double>(integers.begin(), integers.end());
@@ -217,7 +218,7 @@ Result<void> read_elements(ByteStream& stream, const NpyHeader& header, std::spa
     std::vector<char> raw(std::min(piece, to.size()) * bytes);
     for (std::size_t first = 0; first < to.size(); first += piece) {
         const std::span<T> part = to.subspan(first, std::min(piece, to.size() - first));
-        const Result<std::size_t> got = stream.read({raw.data(), part.size() * bytes});
+        Result<std::size_t> got = stream.read({raw.data(), part.size() * bytes});
         if (!got) {
             return tl::unexpected(got.error());
         }

@@ -175,9 +175,8 @@ bool split_descr(NpyHeader& header) {
     const char* last = descr.data() + descr.size();
     const auto [end, error] = std::from_chars(descr.data() + 2, last, header.bytes);
     header.kind = descr[1];
-    const bool big = descr[0] == '>';
-    const bool little = descr[0] == '<';
-    header.swapped = std::endian::native == std::endian::little ? big && header.bytes > 1 : little;
+    constexpr char foreign_order = std::endian::native == std::endian::little ? '>' : '<';
+    header.swapped = descr[0] == foreign_order && header.bytes > 1;
     return error == std::errc() && end == last;
 }
 
@@ -266,7 +265,7 @@ Result<std::size_t> read_start(ByteStream& stream) {
     std::array<unsigned char, 12> start{};
     const auto chars = std::as_writable_bytes(std::span(start));
     char* to = static_cast<char*>(static_cast<void*>(chars.data()));
-    const Result<std::size_t> got = stream.read({to, 8});
+    Result<std::size_t> got = stream.read({to, 8});
     if (!got) {
         return got;
     }
@@ -281,7 +280,7 @@ Result<std::size_t> read_start(ByteStream& stream) {
                           "version 1.0, 2.0 or 3.0");
     }
     const std::size_t width = short_length ? 2 : 4;
-    const Result<std::size_t> more = stream.read({to + 8, width});
+    Result<std::size_t> more = stream.read({to + 8, width});
     if (!more) {
         return more;
     }
@@ -302,14 +301,14 @@ Result<std::size_t> read_start(ByteStream& stream) {
 }  // namespace
 
 Result<NpyHeader> read_npy_header(ByteStream& stream) {
-    const Result<std::size_t> start = read_start(stream);
+    Result<std::size_t> start = read_start(stream);
     if (!start) {
         return tl::unexpected(start.error());
     }
     const std::size_t length = *start % (longest_header * 2);
     const std::size_t first = *start == length ? 10 : 12;
     std::string text(length, '\0');
-    const Result<std::size_t> got = stream.read(text);
+    Result<std::size_t> got = stream.read(text);
     if (!got) {
         return tl::unexpected(got.error());
     }

@@ -60,14 +60,14 @@ Result<Member> open_list(const ZipArchive& archive, const std::string& name, std
 
 /// All of a short list of integers.
 Result<std::vector<std::int64_t>> read_integers(Member& member, MemoryShare& memory) {
-    const Result<void> taken = memory.take(8.0 * static_cast<double>(member.header.count),
-                                           member.stream->source(),
-                                           "a list of integers");
+    Result<void> taken = memory.take(8.0 * static_cast<double>(member.header.count),
+                                     member.stream->source(),
+                                     "a list of integers");
     if (!taken) {
         return tl::unexpected(taken.error());
     }
     std::vector<std::int64_t> values(static_cast<std::size_t>(member.header.count));
-    const Result<void> read = read_elements(*member.stream, member.header, std::span(values));
+    Result<void> read = read_elements(*member.stream, member.header, std::span(values));
     if (!read) {
         return tl::unexpected(read.error());
     }
@@ -86,7 +86,7 @@ Result<std::string> read_format(const ZipArchive& archive) {
                       "a file written by scipy.sparse.save_npz");
     }
     std::string word(static_cast<std::size_t>(member->header.bytes), '\0');
-    const Result<std::size_t> got = member->stream->read(word);
+    Result<std::size_t> got = member->stream->read(word);
     if (!got) {
         return tl::unexpected(got.error());
     }
@@ -117,7 +117,7 @@ public:
     Result<void> for_each(const Each& each, const Context& context) override {
         OrderWatch order;
         EntryBlock block(each);
-        Result<void> done = run(context, [&](const Entry& entry) {
+        Result<void> done = run(context, [&](const MatrixEntry& entry) {
             order.see(entry.row, entry.column);
             block.add(entry);
         });
@@ -182,10 +182,8 @@ private:
                 while (!coo && pointers_[line + 1] <= at) {
                     ++line;
                 }
-                const auto outer = static_cast<std::int64_t>(line);
-                const Entry entry = coo         ? Entry{one[i], other[i], values[i]}
-                                    : by_rows() ? Entry{outer, one[i], values[i]}
-                                                : Entry{one[i], outer, values[i]};
+                const MatrixEntry entry = coo ? MatrixEntry{one[i], other[i], values[i]}
+                                              : entry_in(line, one[i], values[i]);
                 done = check(entry, at);
                 if (done) {
                     with(entry);
@@ -201,12 +199,18 @@ private:
         return {};
     }
 
+    /// An entry of a compressed row or column.
+    MatrixEntry entry_in(std::size_t line, std::int64_t place, std::complex<double> value) const {
+        const auto outer = static_cast<std::int64_t>(line);
+        return by_rows() ? MatrixEntry{outer, place, value} : MatrixEntry{place, outer, value};
+    }
+
     template <class T>
     static Result<void> read_part(Member& member, std::span<T> to) {
         return read_elements(*member.stream, member.header, to);
     }
 
-    Result<void> check(const Entry& entry, std::int64_t at) const {
+    Result<void> check(const MatrixEntry& entry, std::int64_t at) const {
         const bool inside =
             entry.row >= 0 && entry.row < rows() && entry.column >= 0 && entry.column < columns();
         const bool finite = std::isfinite(entry.value.real()) && std::isfinite(entry.value.imag());
@@ -235,8 +239,8 @@ private:
         }
         Context silent = context;
         silent.progress = nullptr;  // a pass that was not announced
-        const Result<void> done =
-            run(silent, [&](const Entry& entry) { places->add(entry.row, entry.column); });
+        Result<void> done =
+            run(silent, [&](const MatrixEntry& entry) { places->add(entry.row, entry.column); });
         const std::int64_t repeated = done ? places->repeated() : 0;
         if (repeated > 0) {
             warn(fmt::format("{} at a place that occurs before; they are added up",
@@ -301,7 +305,7 @@ Result<std::unique_ptr<EntrySource>> open_sparse_npz(const std::string& path,
                       "two positive numbers");
     }
     auto source = std::make_unique<SparseNpz>(std::move(*archive), *format, std::move(*shape));
-    const Result<void> prepared = source->prepare(context);
+    Result<void> prepared = source->prepare(context);
     if (!prepared) {
         return tl::unexpected(prepared.error());
     }

@@ -28,9 +28,9 @@ public:
     }
 
     /// The next entry; false behind the last one, where nothing may follow.
-    Result<bool> next(Entry& entry) {
+    Result<bool> next(MatrixEntry& entry) {
         std::string_view line;
-        const Result<bool> any = next_content(lines_, line);
+        Result<bool> any = next_content(lines_, line);
         if (!any) {
             return any;
         }
@@ -38,7 +38,7 @@ public:
             return at_end(*any);
         }
         line_ = line;
-        const Result<void> read = header_.coordinate ? read_coordinate(line) : read_array(line);
+        Result<void> read = header_.coordinate ? read_coordinate(line) : read_array(line);
         if (!read) {
             return tl::unexpected(read.error());
         }
@@ -109,14 +109,14 @@ private:
         double re = 1.0;
         double im = 0.0;
         if (header_.field != Field::pattern) {
-            const Result<double> part = read_part(line);
+            Result<double> part = read_part(line);
             if (!part) {
                 return tl::unexpected(part.error());
             }
             re = *part;
         }
         if (header_.field == Field::complex) {
-            const Result<double> part = read_part(line);
+            Result<double> part = read_part(line);
             if (!part) {
                 return tl::unexpected(part.error());
             }
@@ -153,11 +153,11 @@ private:
     }
 
     Result<void> read_coordinate(std::string_view line) {
-        const Result<std::int64_t> row = read_index(line, header_.rows);
+        Result<std::int64_t> row = read_index(line, header_.rows);
         if (!row) {
             return tl::unexpected(row.error());
         }
-        const Result<std::int64_t> column = read_index(line, header_.columns);
+        Result<std::int64_t> column = read_index(line, header_.columns);
         if (!column) {
             return tl::unexpected(column.error());
         }
@@ -187,7 +187,7 @@ private:
 
     LineReader& lines_;
     const MatrixMarketHeader& header_;
-    Entry entry_;
+    MatrixEntry entry_;
     std::string_view line_;
     std::int64_t done_ = 0;
 };

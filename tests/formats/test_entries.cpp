@@ -32,8 +32,8 @@ Result<Matrix> matrix_in(const std::string& path) {
     matrix.columns = (*source)->columns();
     std::int64_t count = 0;
     const Result<void> done = (*source)->for_each(
-        [&](std::span<const Entry> block) {
-            for (const Entry& entry : block) {
+        [&](std::span<const MatrixEntry> block) {
+            for (const MatrixEntry& entry : block) {
                 matrix.entries[{entry.row, entry.column}] += entry.value;
                 ++count;
             }
@@ -201,8 +201,8 @@ TEST_CASE("what is written reads back, and an interrupt ends the reading") {
     REQUIRE(source.has_value());
     std::int64_t wrong = 0;
     std::int64_t count = 0;
-    const auto each = [&](std::span<const Entry> block) {
-        for (const Entry& entry : block) {
+    const auto each = [&](std::span<const MatrixEntry> block) {
+        for (const MatrixEntry& entry : block) {
             ++count;
             wrong += entry.value != 1.0 / static_cast<double>(entry.row + 1) ? 1 : 0;
         }

@@ -50,8 +50,8 @@ bool read_file(const std::string& path, Kind kind, const Context& context) {
     const std::int64_t columns = (*source)->columns();
     bool inside = true;
     const auto done = (*source)->for_each(
-        [&](std::span<const Entry> block) {
-            for (const Entry& entry : block) {
+        [&](std::span<const MatrixEntry> block) {
+            for (const MatrixEntry& entry : block) {
                 inside = inside && entry.row >= 0 && entry.row < rows && entry.column >= 0 &&
                          entry.column < columns && std::isfinite(std::abs(entry.value));
             }
