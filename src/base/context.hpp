@@ -37,6 +37,9 @@ public:
 
     double limit() const { return limit_; }
 
+    /// What is not taken now; others may take of it before the caller does.
+    double left() const { return limit_ - taken_; }
+
 private:
     double limit_;
     std::atomic<double> taken_{0.0};
@@ -64,6 +67,7 @@ struct Context {
     std::shared_ptr<MemoryBudget> memory;
     std::stop_token stop;
     std::shared_ptr<Progress> progress;  ///< may be null
+    int digits = 15;  ///< significant digits that are wanted; above 15 where a route can enclose
 };
 
 /// Thrown by `poll` inside a computation, caught where the computation was started.

@@ -31,15 +31,12 @@ public:
             return;
         }
         const double bytes = static_cast<double>(size * sizeof(Stored));
-        const double share = context.memory->limit() / 2 / bytes;
-        std::size_t count =
-            share < static_cast<double>(most) ? static_cast<std::size_t>(share) : most;
-        for (; count >= 2; count = count * 3 / 4) {
-            if (auto lease = context.memory->take(static_cast<double>(count) * bytes)) {
-                lease_.emplace(std::move(*lease));
-                capacity_ = count;
-                return;
-            }
+        const double room = std::min(context.memory->limit() / 2, context.memory->left()) / bytes;
+        const auto count =
+            static_cast<std::size_t>(std::clamp(room, 0.0, static_cast<double>(most)));
+        if (auto lease = context.memory->take(static_cast<double>(count) * bytes)) {
+            lease_.emplace(std::move(*lease));
+            capacity_ = count;
         }
     }
 

@@ -3,6 +3,8 @@
 #include <algorithm>
 #include <bit>
 #include <cmath>
+#include <unordered_map>
+#include <unordered_set>
 
 #include "chainmark/base/big_vector.hpp"
 #include "chainmark/base/parallel.hpp"
@@ -143,6 +145,45 @@ int column_bits(const OrbitRows<Scalar>& rows) {
     return static_cast<int>(std::bit_width(static_cast<std::uint64_t>(rows.basis().dim() - 1)));
 }
 
+/// The diagonal of some rows. Most chains have few distinct elements: then two bytes a row.
+class PieceDiagonal {
+public:
+    void reserve(std::size_t rows) { codes_.reserve(rows); }
+
+    void push_back(double element) {
+        if (plain_.empty()) {
+            const auto place = code_of_.try_emplace(element, values_.size());
+            if (place.first->second < most_values) {
+                if (place.second) {
+                    values_.push_back(element);
+                }
+                codes_.push_back(static_cast<std::uint16_t>(place.first->second));
+                return;
+            }
+            for (const std::uint16_t code : codes_) {
+                plain_.push_back(values_[code]);
+            }
+            codes_ = {};
+        }
+        plain_.push_back(element);
+    }
+
+    /// To be called when all rows are there.
+    void finish() { code_of_ = {}; }
+
+    double operator[](std::size_t row) const {
+        return plain_.empty() ? values_[codes_[row]] : plain_[row];
+    }
+
+private:
+    static constexpr std::size_t most_values = 1 << 16;
+
+    std::unordered_map<double, std::size_t> code_of_;
+    std::vector<double> values_;
+    BigVector<std::uint16_t> codes_;
+    BigVector<double> plain_;  ///< the elements themselves, where there are too many values
+};
+
 /// Elements are columns with the code of their value in the bits above.
 template <class Scalar, class Element>
 class Stored final : public OrbitOperator<Scalar> {
@@ -166,7 +207,7 @@ private:
 
     struct Piece {
         BigVector<std::uint16_t> row_length;
-        BigVector<double> diagonal;
+        PieceDiagonal diagonal;
         BigVector<Element> elements;
     };
 
@@ -195,6 +236,7 @@ private:
                 }
             });
         piece.elements.insert(piece.elements.end(), ahead, Element(0));
+        piece.diagonal.finish();
     }
 
     void multiply_rows(std::size_t i, const Scalar* x, RowSink<Scalar>& sink) const override {
@@ -262,6 +304,7 @@ double stored_bytes(const OrbitRows<Scalar>& rows) {
     const std::int64_t dim = rows.basis().dim();
     double counted = 0.0;
     double elements = 0.0;
+    std::unordered_set<double> on_diagonal;
     for (std::int64_t s = 0; s < n_samples; ++s) {
         const std::int64_t first = dim * s / n_samples;
         const std::int64_t last = std::min(first + sample, dim * (s + 1) / n_samples);
@@ -269,13 +312,19 @@ double stored_bytes(const OrbitRows<Scalar>& rows) {
         for_each_row(rows,
                      first,
                      last,
-                     [&](std::int64_t /*row*/,
+                     [&](std::int64_t row,
                          const std::uint32_t* /*column*/,
                          const std::uint32_t* /*code*/,
-                         int count) { elements += count; });
+                         int count) {
+                         elements += count;
+                         on_diagonal.insert(rows.diagonal_element(row));
+                     });
     }
     const double per_row = margin * elements / std::max(counted, 1.0);
-    const double diagonal = rows.op().diagonal().empty() ? 0.0 : 8.0;
+    const bool few_values = static_cast<double>(on_diagonal.size()) < counted / 4;
+    const double diagonal = rows.op().diagonal().empty() ? 0.0
+                            : few_values                 ? sizeof(std::uint16_t)
+                                                         : sizeof(double);
     return static_cast<double>(dim) * (per_row * (fits_in_32_bits(rows) ? 4 : 8) + 2 + diagonal);
 }
 
