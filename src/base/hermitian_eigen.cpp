@@ -44,45 +44,37 @@ void check(int info, const char* routine) {
     }
 }
 
-}  // namespace
-
-HermitianEigen<double> hermitian_eigen(Eigen::MatrixXd matrix) {
+/// `job`: "N" for the values alone, "V" to overwrite the matrix by the vectors, too.
+Eigen::VectorXd run_dsyevd(const char* job, Eigen::MatrixXd& matrix) {
     const int n = static_cast<int>(matrix.rows());
-    HermitianEigen<double> result;
-    result.values.resize(n);
+    Eigen::VectorXd values(n);
     int info = 0;
-    int query = -1;
+    const auto call = [&](double* work, int lwork, int* iwork, int liwork) {
+        dsyevd_(
+            job, "L", &n, matrix.data(), &n, values.data(), work, &lwork, iwork, &liwork, &info);
+        check(info, "dsyevd");
+    };
     double work_size = 0;
     int iwork_size = 0;
-    dsyevd_("V",
-            "L",
-            &n,
-            matrix.data(),
-            &n,
-            result.values.data(),
-            &work_size,
-            &query,
-            &iwork_size,
-            &query,
-            &info);
-    check(info, "dsyevd");
+    call(&work_size, -1, &iwork_size, -1);
     const int lwork = static_cast<int>(work_size);
     std::vector<double> work(static_cast<std::size_t>(lwork));
     std::vector<int> iwork(static_cast<std::size_t>(iwork_size));
-    dsyevd_("V",
-            "L",
-            &n,
-            matrix.data(),
-            &n,
-            result.values.data(),
-            work.data(),
-            &lwork,
-            iwork.data(),
-            &iwork_size,
-            &info);
-    check(info, "dsyevd");
+    call(work.data(), lwork, iwork.data(), iwork_size);
+    return values;
+}
+
+}  // namespace
+
+HermitianEigen<double> hermitian_eigen(Eigen::MatrixXd matrix) {
+    HermitianEigen<double> result;
+    result.values = run_dsyevd("V", matrix);
     result.vectors = std::move(matrix);
     return result;
+}
+
+Eigen::VectorXd symmetric_eigenvalues(Eigen::MatrixXd matrix) {
+    return run_dsyevd("N", matrix);
 }
 
 HermitianEigen<std::complex<double>> hermitian_eigen(Eigen::MatrixXcd matrix) {

@@ -19,6 +19,9 @@ struct HermitianEigen {
 HermitianEigen<double> hermitian_eigen(Eigen::MatrixXd matrix);
 HermitianEigen<std::complex<double>> hermitian_eigen(Eigen::MatrixXcd matrix);
 
+/// The eigenvalues of a real symmetric matrix alone, ascending, from its lower triangle.
+Eigen::VectorXd symmetric_eigenvalues(Eigen::MatrixXd matrix);
+
 /// Error bounds of the eigenvalues of one Hermitian matrix from the residual norms r_i of an
 /// orthonormal set of approximate eigenvectors. Approximations whose intervals value +- r_i overlap
 /// form a cluster; a cluster's R has ||R||_2 <= sqrt(sum r_i^2), and that many eigenvalues lie that

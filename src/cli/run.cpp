@@ -1,5 +1,6 @@
 #include "chainmark/cli/run.hpp"
 
+#include <algorithm>
 #include <charconv>
 #include <cmath>
 #include <cstdlib>
@@ -26,6 +27,7 @@ namespace {
 constexpr double gib = 1024.0 * 1024.0 * 1024.0;
 constexpr double memory_share = 0.8;  // of what is free, by default
 constexpr int most_threads = 4096;
+constexpr int most_digits = 1000;
 
 Error bad_option(const std::string& option, const std::string& found, const std::string& allowed) {
     return {ErrorCode::bad_option, {.source = option}, found, allowed};
@@ -57,6 +59,13 @@ void check_output_file(const std::string& option, const std::string& path, Error
 void check_outputs(const RunOptions& options, Errors& errors) {
     check_output_file("--json", options.json, errors);
     check_output_file("--csv", options.csv, errors);
+    const bool encloses = std::any_of(
+        routes().begin(), routes().end(), [](const Route& route) { return route.encloses; });
+    if (options.digits.value_or(0) > Context{}.digits && !encloses) {
+        errors.push_back(bad_option("--digits",
+                                    std::to_string(*options.digits),
+                                    "at most 15 in this build, which lacks ball arithmetic (Arb)"));
+    }
     if (!options.json.empty() && options.json == options.csv) {
         errors.push_back(bad_option("--csv",
                                     "'" + options.csv + "' is where --json goes already",
@@ -86,6 +95,14 @@ int threads_of(const std::string& text) {
             "--threads", text, fmt::format("a whole number from 1 to {}", most_threads));
     }
     return *threads;
+}
+
+int digits_of(const std::string& text) {
+    const auto digits = number_of<int>(text);
+    if (!digits || *digits < 1 || *digits > most_digits) {
+        throw bad_number("--digits", text, fmt::format("a whole number from 1 to {}", most_digits));
+    }
+    return *digits;
 }
 
 double gib_of(const std::string& text) {
@@ -150,8 +167,12 @@ Provenance provenance(const RunOptions& options, const std::string& command_line
     return made;
 }
 
-RunReport compute(const Plan& plan, Provenance provenance, const InterruptWatch& interrupts) {
+RunReport compute(const Plan& plan,
+                  Provenance provenance,
+                  int digits,
+                  const InterruptWatch& interrupts) {
     Context context;
+    context.digits = digits;
     context.threads = provenance.threads;
     context.memory = std::make_shared<MemoryBudget>(provenance.memory_gib * gib);
     context.stop = interrupts.token();
@@ -217,6 +238,12 @@ CLI::App* add_run(CLI::App& app, RunOptions& options) {
             [&options](const std::string& text) { options.memory_gib = gib_of(text); },
             "limit for big arrays (default: 80 % of free)")
         ->type_name("GiB");
+    command
+        ->add_option_function<std::string>(
+            "--digits",
+            [&options](const std::string& text) { options.digits = digits_of(text); },
+            "certified digits where a route can enclose (more than 15)")
+        ->type_name("N");
     command->add_flag("--quiet", options.quiet, "only what differs or is undecided, and one line");
     command->add_flag("--no-color", options.no_color, "no colours (as with NO_COLOR set)");
     return command;
@@ -234,7 +261,10 @@ int run(const RunOptions& options, const std::string& command_line) {
         print_errors(plan.error());
         return exit_wrong_input;
     }
-    const RunReport report = compute(*plan, provenance(options, command_line), interrupts);
+    const RunReport report = compute(*plan,
+                                     provenance(options, command_line),
+                                     options.digits.value_or(Context{}.digits),
+                                     interrupts);
     const bool written = write_reports(report, options);
     if (report.interrupted) {
         // Library calls that cannot be stopped may still run on threads of their own.

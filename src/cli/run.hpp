@@ -16,6 +16,7 @@ struct RunOptions {
     std::string only;
     std::optional<int> threads;  ///< default: all
     std::optional<double> memory_gib;
+    std::optional<int> digits;  ///< default: what doubles hold
     bool quiet = false;
     bool no_color = false;
 };

@@ -96,6 +96,9 @@ Json routes_json() {
     Json list = Json::array();
     for (const Route& route : routes()) {
         list.push_back({{"name", to_string(route.id)}, {"sentence", std::string(route.sentence)}});
+        if (!route.lacks.empty()) {
+            list.back()["lacks"] = std::string(route.lacks);
+        }
     }
     return list;
 }
@@ -104,6 +107,9 @@ std::string routes_text() {
     std::vector<std::pair<std::string, std::vector<std::string>>> entries;
     for (const Route& route : routes()) {
         entries.push_back({to_string(route.id), {std::string(route.sentence)}});
+        if (!route.lacks.empty()) {
+            entries.back().second.push_back("this build lacks: " + std::string(route.lacks));
+        }
     }
     return definition_list(entries);
 }

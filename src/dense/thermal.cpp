@@ -24,12 +24,13 @@ Thermal<Scalar>::Thermal(std::vector<Level> levels,
     : levels_(std::move(levels)), spectrum_(spectrum), temperature_(temperature) {
     const long double lowest = levels_.front().energy;
     const long double t = temperature;
-    long double sum = 0.0L;
+    long double others = 0.0L;  // beside the lowest level's weight, 1
     for (const Level& level : levels_) {
         weights_.push_back(std::exp((lowest - level.energy) / t));
-        sum += weights_.back();
+        others += weights_.size() > 1 ? weights_.back() : 0.0L;
     }
-    log_sum_ = std::log(sum);
+    const long double sum = 1.0L + others;
+    log_sum_ = std::log1p(others);
     long double squares = 0.0L;
     double all_squares = 0.0;
     for (std::size_t n = 0; n < levels_.size(); ++n) {

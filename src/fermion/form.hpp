@@ -6,45 +6,78 @@
 
 #include <tl/expected.hpp>
 
+#include "chainmark/fermion/angles.hpp"
 #include "chainmark/operators/chain.hpp"
 #include "chainmark/operators/term_list.hpp"
 
 namespace chainmark::fermion {
 
+/// Parity of the number N of up spins; P = (-1)^N.
+enum class UpCount { even = 0, odd = 1 };
+
+/// P of a class: +1 or -1.
+inline int parity_of(UpCount up_count) {
+    return up_count == UpCount::even ? 1 : -1;
+}
+
 enum class FormKind {
-    uniform_ring,  ///< one hop everywhere, the wrap bond with the phase of the chain's twist
-    uniform_open,  ///< one hop everywhere, no wrap bond
+    uniform_ring,  ///< every bond of a range the same, wrapping ones with the phase of the twist
+    uniform_open,  ///< one hop between neighbours everywhere, free ends, nothing else but fields
     general,
 };
 
-/// A chain of spins that is a chain of free fermions,
-///   H = constant + sum_j hop_j (S+_j S-_{j+1}) + wrap S+_{L-1} S-_0 + h.c. + sum_j onsite_j Sz_j.
-/// With S+_j = c+_j prod_{l<j} (1 - 2 n_l), n = c+ c, Sz = n - 1/2, for states of N up spins
-///   H = constant + sum_ij A_ij c+_i c_j - (1/2) sum_j onsite_j,
-///   A_{j,j+1} = hop_j,  A_{L-1,0} = (-1)^(N-1) wrap,  A_jj = onsite_j,  A Hermitian,
-/// since the string of the wrap bond counts the other N - 1 fermions.
-struct ChainForm {
+/// hop c+_i c_j + pair c+_i c+_j + h.c., i = first, j = (first + range) mod L. A bond with
+/// first + range >= L wraps: its string goes the other way round and it enters with the factor -P.
+struct Bond {
+    int first = 0;
+    int range = 0;  ///< 1 ... L-1
+    std::complex<double> hop;
+    std::complex<double> pair;
+};
+
+/// A chain of spins that is a chain of free fermions. With S+_j = c+_j prod_{l<j} (1 - 2 n_l),
+/// Sz = n - 1/2, a product of two S+- needs Sz on all sites between them and nowhere else,
+///   S+_i Sz_{i+1} ... Sz_{j-1} S-_j = (-1/2)^(j-i-1) c+_i c_j,
+///   S+_i Sz_{i+1} ... Sz_{j-1} S+_j = (-1/2)^(j-i-1) c+_i c+_j,
+/// or on all sites outside and none between: the same of the sites j, j+1, ... i around the ring,
+/// times -P. Sz_j alone, and the product of all others (times P), are fields; that of all is P.
+///   H = constant + P constant_times_parity + sum of bonds
+///       + sum_j (onsite_j + P onsite_times_parity_j) (n_j - 1/2).
+struct QuadraticForm {
     Chain chain;
-    std::vector<std::complex<double>> hop;  ///< L - 1 of them
-    std::complex<double> wrap;
-    std::vector<double> onsite;  ///< L of them
-    double constant = 0.0;
+    std::vector<Bond> bonds;   ///< ascending in (range, first), every (range, first) once
+    std::vector<Real> onsite;  ///< L of them
+    std::vector<Real> onsite_times_parity = {};  ///< L of them, or empty
+    Real constant = 0.0L;
+    Real constant_times_parity = 0.0L;
     FormKind kind = FormKind::general;
+    /// Uniform rings: bound on the norm of what the wrapping bonds, rounded to double, differ by
+    /// from the first one times the exact phase.
+    Real wrap_deviation = 0.0L;
 
     int length() const { return chain.length(); }
+    bool wraps(const Bond& bond) const { return bond.first + bond.range >= length(); }
 
-    /// The hop of a uniform chain (0 for a single site).
-    std::complex<double> uniform_hop() const { return hop.empty() ? 0.0 : hop.front(); }
+    /// True where no bond pairs: N is conserved and a uniform field shifts every mode alike.
+    bool conserves_number() const;
 
-    /// True where the two parities of N have different modes.
-    bool parity_matters() const { return kind == FormKind::uniform_ring || wrap != 0.0; }
+    /// True where the two classes have different modes.
+    bool parity_matters() const;
 
-    /// |wrap - hop exp(i twist)|, the rounding of the wrap bond of a uniform ring.
-    long double wrap_deviation() const;
+    /// The coefficient of n_j - 1/2 in a class.
+    Real field_at(int site, UpCount up_count) const;
+    Real constant_of(UpCount up_count) const;
+
+    /// The bonds of site 0: one a range. Uniform chains.
+    std::vector<Bond> bonds_of_first_site() const;
+
+    /// Adds -field sum_j Sz_j.
+    void add_field(double field);
 };
 
 /// Finds the form in a term list on a finite chain, or says why there is none: the spin is not 1/2,
-/// or which string (the first in the list) is not of this kind, and why.
-tl::expected<ChainForm, std::string> recognise(const Chain& chain, const TermList& terms);
+/// or which string (the first in the list) is not of this kind, and why. O(length of all strings)
+/// and the sorting of the bonds.
+tl::expected<QuadraticForm, std::string> recognise(const Chain& chain, const TermList& terms);
 
 }  // namespace chainmark::fermion

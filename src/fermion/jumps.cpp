@@ -20,8 +20,11 @@ Real slope(const Vertex& from, const Vertex& to) {
 std::vector<Vertex> lower_hull(const Solution& solution) {
     std::vector<Vertex> hull;
     for (int n = 0; n <= solution.form.length(); ++n) {
-        const ModeSet& modes = solution.of(n % 2 == 0 ? UpCount::even : UpCount::odd);
-        const Vertex next{n, modes.lowest[static_cast<std::size_t>(n)]};
+        const UpCount up_count = n % 2 == 0 ? UpCount::even : UpCount::odd;
+        const ModeSet& modes = solution.of(up_count);
+        const Vertex next{n,
+                          solution.form.constant_of(up_count) - modes.trace / 2 +
+                              modes.lowest[static_cast<std::size_t>(n)]};
         while (hull.size() >= 2 &&
                slope(hull[hull.size() - 2], hull.back()) >= slope(hull.back(), next)) {
             hull.pop_back();

@@ -16,9 +16,11 @@ ClassLevels::ClassLevels(const ModeSet& modes, UpCount up_count, Real field, Rea
     : modes_(modes), up_count_(up_count), field_(field) {
     const auto first = std::lower_bound(modes.energy.begin(), modes.energy.end(), field);
     sea_ = static_cast<int>(first - modes.energy.begin());
-    odd_flips_ = (sea_ + static_cast<int>(up_count)) % 2;
+    const bool odd_vacuum = modes.vacuum < 0;
+    odd_flips_ = (sea_ + static_cast<int>(up_count) + (odd_vacuum ? 1 : 0)) % 2;
     const Real half = static_cast<Real>(modes.length()) / 2;
-    base_ = offset + modes.lowest[at(sea_)] - field * (static_cast<Real>(sea_) - half);
+    base_ = offset + (modes.lowest[at(sea_)] - modes.trace / 2) -
+            field * (static_cast<Real>(sea_) - half);
     below_ = sea_ - 1;
     above_ = sea_;
     nodes_.push_back({});
@@ -75,31 +77,27 @@ std::optional<State> ClassLevels::next() {
         state.flips.push_back(order_[at(nodes_[at(member)].largest)]);
     }
     for (const int position : state.flips) {
-        state.particles += is_occupied(position) ? -1 : 1;
+        state.particles += is_filled(position) ? -1 : 1;
     }
     return state;
 }
 
-Occupation ClassLevels::occupation(const State& state) {
-    if (!sea_occupation_) {
-        std::vector<bool> occupied(modes_.label.size());
-        for (int position = 0; position < sea_; ++position) {
-            occupied[at(modes_.label[at(position)])] = true;
-        }
-        sea_occupation_.emplace(occupied);
+std::vector<Real> ClassLevels::signs(const State& state) const {
+    std::vector<Real> signs(modes_.label.size(), 1.0L);
+    for (int position = 0; position < sea_; ++position) {
+        signs[at(modes_.label[at(position)])] = -1.0L;
     }
-    Occupation result = *sea_occupation_;
     for (const int position : state.flips) {
-        result.flip(modes_.label[at(position)]);
+        signs[at(modes_.label[at(position)])] *= -1.0L;
     }
-    return result;
+    return signs;
 }
 
 std::int64_t ClassLevels::label_sum(const State& state) const {
     std::int64_t sum = modes_.label_sum[at(sea_)];
     for (const int position : state.flips) {
         const std::int64_t label = modes_.label[at(position)];
-        sum += is_occupied(position) ? -label : label;
+        sum += is_filled(position) ? -label : label;
     }
     return sum;
 }

@@ -13,16 +13,17 @@ namespace chainmark::fermion {
 /// A many-body state: modes of one class, the sea of all negative ones with some flipped.
 struct State {
     UpCount up_count = UpCount::even;
-    int particles = 0;
-    Real energy = 0.0L;      ///< without the constant of H
+    int particles = 0;  ///< filled modes: the up count where N is conserved
+    Real energy = 0.0L;
     std::vector<int> flips;  ///< positions in the ascending list of modes
 };
 
 /// The states of one parity class in ascending order of energy, every one exactly once.
 ///
 /// With a_0 <= a_1 <= ... the |energy - field| of the modes, a state is the sea (all modes below
-/// the field occupied) with a set of modes flipped, at the energy of the sea plus the sum of their
-/// a. The parity of N fixes the parity of the number of flips. Sets T of positions 1, 2, ... are
+/// the field filled) with a set of modes flipped, at the energy of the sea plus the sum of their a.
+/// The P of the class, with that of the state without filled modes, fixes the parity of the number
+/// of flips. Sets T of positions 1, 2, ... are
 /// free: position 0, the cheapest, is flipped where the parity asks for it. Starting from T = {},
 /// each T with largest element i has two children, T + {i+1} and T with i replaced by i+1; neither
 /// is cheaper than T since a_0 <= a_{i+1}, and every T is reached once, so a heap gives the states
@@ -30,6 +31,7 @@ struct State {
 /// enumeration of subset sums, common practice, no source.
 class ClassLevels {
 public:
+    /// `offset`: the constant of the class.
     ClassLevels(const ModeSet& modes, UpCount up_count, Real field, Real offset);
 
     /// The next state; nothing after the last of 2^(L-1).
@@ -38,10 +40,10 @@ public:
     /// Energy of the next state without taking it.
     std::optional<Real> peek() const;
 
-    /// Occupied labels of a state, for its orbitals. O(L) the first time.
-    Occupation occupation(const State& state);
+    /// -1 for the labels of filled modes, 1 for the others: <1 - 2 n> of each, for the frame. O(L).
+    std::vector<Real> signs(const State& state) const;
 
-    /// Sum of the occupied labels.
+    /// Sum of the filled labels.
     std::int64_t label_sum(const State& state) const;
 
 private:
@@ -61,7 +63,7 @@ private:
 
     /// a_i; the positions are found outward from the field as they are needed.
     Real cost(int i);
-    bool is_occupied(int position) const { return position < sea_; }
+    bool is_filled(int position) const { return position < sea_; }
     bool flips_cheapest(const Node& node) const { return node.size % 2 != odd_flips_; }
     void push(int before, int largest);
 
@@ -69,14 +71,13 @@ private:
     UpCount up_count_;
     Real field_;
     int sea_;                 ///< number of modes below the field
-    int odd_flips_;           ///< 1 where the parity of N needs an odd number of flips
+    int odd_flips_;           ///< 1 where the class needs an odd number of flips
     Real base_;               ///< energy of the sea
     std::vector<int> order_;  ///< positions by |energy - field|, as far as known
     int below_;               ///< next position to enter `order_` from below the field ...
     int above_;               ///< ... and from above
     std::vector<Node> nodes_;
     std::priority_queue<Open> open_;
-    std::optional<Occupation> sea_occupation_;
 };
 
 }  // namespace chainmark::fermion

@@ -1,256 +1,280 @@
+#include <algorithm>
 #include <cmath>
 #include <optional>
 
 #include <fmt/format.h>
 
 #include "chainmark/fermion/answers.hpp"
-#include "chainmark/fermion/reach.hpp"
+#include "chainmark/fermion/bulk.hpp"
+#include "chainmark/fermion/bulk_correlations.hpp"
+#include "chainmark/fermion/bulk_entropy.hpp"
+#include "chainmark/fermion/infinite_phase.hpp"
 #include "chainmark/fermion/routes.hpp"
 
 namespace chainmark {
 namespace {
 
+using fermion::Bands;
 using fermion::Bounded;
+using fermion::InfiniteChain;
+using fermion::Phase;
 using fermion::Real;
-using fermion::real_epsilon;
-using fermion::real_pi;
 
-/// The infinite chain sum_j J (Sx_j Sx_j+1 + Sy_j Sy_j+1) - h Sz_j + constant.
-struct XxChain {
-    Real coupling = 0.0L;  ///< J
-    Real field = 0.0L;     ///< h
-    Real constant = 0.0L;  ///< per site
-
-    Real size() const { return std::abs(coupling); }
-    bool is_critical() const { return std::abs(field) < size(); }
-    bool is_saturated() const { return std::abs(field) > size(); }
-    bool is_decoupled() const { return coupling == 0.0L; }
-
-    /// J = h = 0: every state is a ground state.
-    bool is_trivial() const { return is_decoupled() && field == 0.0L; }
-
-    /// sqrt(J^2 - h^2) inside the critical phase, small near saturation without loss of digits.
-    Real root() const { return std::sqrt((size() - field) * (size() + field)); }
-
-    /// arcsin(h/|J|), well conditioned up to |h| = |J|.
-    Real angle() const { return std::atan2(field, root()); }
-
-    Real magnetization() const {
-        if (is_saturated() || is_trivial()) {
-            return field == 0.0L ? 0.0L : std::copysign(0.5L, field);
-        }
-        return angle() / real_pi;
-    }
-};
-
-struct Recognised {
-    std::optional<XxChain> chain;
-    std::string refusal;
-};
-
-Recognised recognise(const Problem& problem) {
-    if (!problem.chain.is_infinite()) {
-        return {std::nullopt, "needs the infinite chain"};
-    }
-    if (problem.chain.two_s != 1) {
-        return {std::nullopt, "needs spin 1/2"};
-    }
-    if (problem.terms->cell != 1) {
-        return {std::nullopt,
-                fmt::format("only the uniform XX chain is covered; these couplings repeat after {} "
-                            "sites",
-                            problem.terms->cell)};
-    }
-    const SplitField split = split_uniform_field(*problem.terms, problem.chain);
-    const OperatorString hop = {{0, SiteOperator::plus}, {1, SiteOperator::minus}};
-    XxChain chain{.coupling = 0.0L,
-                  .field = static_cast<Real>(problem.field) + split.field,
-                  .constant = split.rest.constant};
-    for (const Term& term : split.rest.terms) {
-        const bool is_hop = term.string == hop || term.string == conjugate(hop);
-        if (!is_hop || term.coefficient.imag() != 0.0) {
-            return {std::nullopt,
-                    fmt::format("only the uniform XX chain is covered; the string {} {}",
-                                to_string(term.string),
-                                is_hop ? "has a complex coefficient" : "does not belong to it")};
-        }
-        chain.coupling = 2 * static_cast<Real>(term.coefficient.real());
-    }
-    return {chain, ""};
+Reference answer_of(const fermion::GroundValue& found) {
+    return fermion::number_reference(found.value, found.closed ? Basis::rounding : Basis::estimate);
 }
 
-Reference number(Real value, Real error) {
-    return fermion::number_reference({value, error}, Basis::rounding);
-}
-
-/// Relative rounding of a handful of operations.
-constexpr Real few = 16 * real_epsilon;
-
-/// e = -(1/pi) [sqrt(J^2 - h^2) + h arcsin(h/|J|)] for |h| < |J|, -|h|/2 outside.
-Reference energy_per_site(const XxChain& chain) {
-    const Real size = chain.size() + std::abs(chain.field);
-    const Real energy = chain.is_critical()
-                            ? -(chain.root() + chain.field * chain.angle()) / real_pi
-                            : -std::abs(chain.field) / 2;
-    return number(energy + chain.constant, few * (size + std::abs(chain.constant)));
-}
-
-/// m = arcsin(h/|J|)/pi for |h| < |J|, sign(h)/2 outside.
-Reference magnetization(const XxChain& chain) {
-    const Real value = chain.magnetization();
-    Reference reference = number(value, few * std::abs(value));
-    if (chain.is_trivial()) {
+/// With a band of no width at zero energy every filling of it is a ground state.
+Reference magnetization(const Bands& bands) {
+    Reference reference = answer_of(fermion::ground_magnetization(bands));
+    const InfiniteChain& chain = bands.chain();
+    const double sign = chain.field > 0 ? 1.0 : -1.0;
+    if (fermion::phase_of(chain) == Phase::trivial) {
         reference.range = Range{{-0.5, 0.5}};
+    } else if (fermion::at_flat_band(chain)) {
+        reference = fermion::number_reference({0.25L * sign, 0.0L}, Basis::exact);
+        reference.range = Range{{std::min(0.0, 0.5 * sign), std::max(0.0, 0.5 * sign)}};
     }
     return reference;
 }
 
-/// chi = 1/(pi sqrt(J^2 - h^2)) for |h| < |J|, 0 outside.
-Reference susceptibility(const XxChain& chain) {
-    if (chain.is_trivial()) {
+Reference susceptibility(const Bands& bands) {
+    const InfiniteChain& chain = bands.chain();
+    const Phase phase = fermion::phase_of(chain);
+    if (phase == Phase::trivial || fermion::at_flat_band(chain)) {
         return fermion::status_reference(Special::jump);
     }
-    if (chain.is_saturated()) {
-        return fermion::number_reference({0.0L, 0.0L}, Basis::exact);
-    }
-    if (!chain.is_critical()) {
+    const bool diverges = phase == Phase::saturation_point || phase == Phase::gap_edge ||
+                          (phase == Phase::critical && !chain.conserves_sz());
+    if (diverges) {
         return fermion::status_reference(Special::infinite);
     }
-    const Real value = 1 / (real_pi * chain.root());
-    return number(value, few * value);
-}
-
-Reference gap(const XxChain& chain) {
-    if (!chain.is_saturated()) {
+    if (chain.conserves_sz() && phase != Phase::critical) {
         return fermion::number_reference({0.0L, 0.0L}, Basis::exact);
     }
-    const Real value = std::abs(chain.field) - chain.size();
-    return number(value, real_epsilon * std::abs(chain.field));
+    return answer_of(fermion::ground_susceptibility(bands));
 }
 
-/// J cos k = h has the solution k = arccos(h/J) in [0, pi] for |h| <= |J|.
-Reference fermi_momentum(const XxChain& chain) {
-    if (chain.is_decoupled() || chain.is_saturated()) {
+Reference gap(const Bands& bands) {
+    const Bounded found = fermion::gap_of(bands);
+    const bool exact = found.value == 0.0L && found.error == 0.0L;
+    return fermion::number_reference(found, exact ? Basis::exact : Basis::rounding);
+}
+
+/// XX: J cos k = h has the solution k = arccos(h/J) in [0, pi] for |h| <= |J|. With pairing e
+/// vanishes at k = 0 or pi alone, at the border of the phases.
+Reference fermi_momentum(const InfiniteChain& chain) {
+    constexpr Real few = 16 * fermion::real_epsilon;
+    const Phase phase = fermion::phase_of(chain);
+    const bool gapless = phase == Phase::critical || phase == Phase::saturation_point;
+    const Real border = chain.hopping();
+    if (!gapless || border == 0.0L) {
         return fermion::status_reference(Special::undefined);
     }
-    const Real h_over_sign = chain.coupling > 0 ? chain.field : -chain.field;
-    return number(std::atan2(chain.root(), h_over_sign), few * real_pi);
+    if (!chain.conserves_sz()) {
+        const bool at_zero = chain.field * border > 0;
+        return fermion::number_reference({at_zero ? 0.0L : fermion::real_pi, 0.0L},
+                                         Basis::rounding);
+    }
+    const Real inside = (std::abs(border) - chain.field) * (std::abs(border) + chain.field);
+    const Real h_over_sign = border > 0 ? chain.field : -chain.field;
+    return fermion::number_reference(
+        {std::atan2(std::sqrt(std::max(0.0L, inside)), h_over_sign), few * fermion::real_pi},
+        Basis::rounding);
 }
 
-Reference phase(const XxChain& chain) {
-    if (chain.is_trivial()) {
-        return fermion::status_reference(Special::undefined);
-    }
-    if (chain.is_saturated()) {
-        return fermion::text_reference(chain.field > 0 ? "saturated_up" : "saturated_down");
-    }
-    return fermion::text_reference(chain.is_critical() ? "critical" : "saturation_point");
+Reference phase(const InfiniteChain& chain) {
+    const std::string word = fermion::to_string(fermion::phase_of(chain));
+    return word.empty() ? fermion::status_reference(Special::undefined)
+                        : fermion::text_reference(word);
 }
 
-/// sin(pi x) for x >= 0, exactly 0 for whole x.
-Real sine_of_turns(Real x) {
-    const Real rest = std::fmod(x, 2.0L);
-    const Real part = rest - std::round(rest);
-    return std::fmod(std::round(rest), 2.0L) == 0.0L ? std::sin(real_pi * part)
-                                                     : -std::sin(real_pi * part);
+Reference spin_correlation(const Bands& bands,
+                           const std::optional<Real>& temperature,
+                           const Options& options) {
+    const fermion::Correlations correlations(bands, temperature, options);
+    Reference reference = fermion::array_reference(
+        correlations.values(), correlations.closed() ? Basis::rounding : Basis::estimate);
+    reference.value.complex = options.axes == Axes::plus_minus;
+    return reference;
 }
 
-/// <Sz_0 Sz_r> = m^2 - [sin(pi n r)/(pi r)]^2 for r > 0 with n = m + 1/2 up spins per site.
-Bounded szsz(const XxChain& chain, int r, bool connected) {
-    const Real m = chain.magnetization();
-    if (r == 0) {
-        return {0.25L - (connected ? m * m : 0.0L), few};
-    }
-    if (chain.is_trivial()) {
-        return {0.0L, 0.0L};  // the average over all states
-    }
-    const Real distance = static_cast<Real>(r);
-    const Real kernel = sine_of_turns((m + 0.5L) * distance) / (real_pi * distance);
-    return {(connected ? 0.0L : m * m) - kernel * kernel, few};
+Reference string_order(const Bands& bands, const Options& options) {
+    return fermion::array_reference(fermion::string_orders(bands, options), Basis::estimate);
 }
 
-Reference spin_correlation(const XxChain& chain, const Options& options) {
-    std::vector<Bounded> numbers;
+/// Where the ground space holds more than one state the entropy depends on which.
+Answer entanglement_entropy(const Bands& bands, const Options& options) {
+    const Phase phase = fermion::phase_of(bands.chain());
+    if (phase == Phase::trivial || phase == Phase::ordered_x || phase == Phase::ordered_y ||
+        fermion::at_flat_band(bands.chain())) {
+        return Undecided{"depends on the state: there is more than one ground state"};
+    }
+    return fermion::number_reference(fermion::block_entropy(bands, options), Basis::estimate);
+}
+
+Reference thermal(const fermion::BulkThermal& thermal, QuantityId id) {
+    const auto bounded = [&]() -> Bounded {
+        switch (id) {
+            case QuantityId::free_energy_per_site:
+                return thermal.free_energy();
+            case QuantityId::energy_per_site:
+                return thermal.energy();
+            case QuantityId::entropy_per_site:
+                return thermal.entropy();
+            case QuantityId::specific_heat_per_site:
+                return thermal.specific_heat();
+            case QuantityId::magnetization:
+                return thermal.magnetization();
+            default:
+                return thermal.susceptibility();
+        }
+    };
+    return fermion::number_reference(bounded(), Basis::estimate);
+}
+
+Reference ground(const Bands& bands, QuantityId id) {
+    switch (id) {
+        case QuantityId::ground_energy_per_site:
+            return answer_of(fermion::ground_energy_per_site(bands));
+        case QuantityId::magnetization:
+            return magnetization(bands);
+        case QuantityId::susceptibility:
+            return susceptibility(bands);
+        case QuantityId::gap:
+            return gap(bands);
+        case QuantityId::fermi_momentum:
+            return fermi_momentum(bands.chain());
+        default:
+            return phase(bands.chain());
+    }
+}
+
+/// tanh(e/2T) turns within T of a Fermi point, and momenta are no finer than this.
+constexpr Real lowest_temperature = 1e-12L;
+
+Answer answer(const Bands& bands, const Problem& problem, const Query& query) {
+    const std::optional<Real> temperature = problem.temperature;
+    if (temperature && *temperature < lowest_temperature * bands.chain().scale()) {
+        return Undecided{fmt::format("temperatures below {} of the couplings are not resolved",
+                                     static_cast<double>(lowest_temperature))};
+    }
+    if (query.spec->id == QuantityId::spin_correlation) {
+        return spin_correlation(bands, temperature, query.options);
+    }
+    if (temperature) {
+        return thermal({bands, *temperature}, query.spec->id);
+    }
+    if (query.spec->id == QuantityId::string_order) {
+        return string_order(bands, query.options);
+    }
+    if (query.spec->id == QuantityId::entanglement_entropy) {
+        Answer entropy = entanglement_entropy(bands, query.options);
+        if (auto* reference = std::get_if<Reference>(&entropy)) {
+            reference->approach =
+                fermion::approach_of(bands, problem.chain, QuantityId::entanglement_entropy);
+        }
+        return entropy;
+    }
+    Reference reference = ground(bands, query.spec->id);
+    reference.approach = fermion::approach_of(bands, problem.chain, query.spec->id);
+    reference.critical = fermion::critical_law(bands, query.spec->id);
+    return reference;
+}
+
+int reach(const Options& options) {
+    int farthest = 0;
     for (const auto& [i, j] : options.pairs) {
-        numbers.push_back(szsz(chain, std::abs(i - j), options.connected));
+        farthest = std::max(farthest, std::abs(i - j));
     }
     for (const int r : options.distance) {
-        numbers.push_back(szsz(chain, std::abs(r), options.connected));
+        farthest = std::max(farthest, r);
     }
-    return fermion::array_reference(numbers, Basis::rounding);
+    return farthest;
 }
 
-/// How a finite chain with this boundary comes near, inside the critical phase. The corrections of
-/// the energy are those of a conformally invariant chain, L^-2 per site on a ring and a surface
-/// energy with free ends; off h = 0 the filling of a finite chain moves in steps of 1/L, so that
-/// the distances oscillate below an envelope. Source: H. W. J. Bloete, J. L. Cardy, M. P.
-/// Nightingale, Phys. Rev. Lett. 56, 742 (1986).
-std::optional<Approach> approach(const XxChain& xx, const Chain& chain, QuantityId id) {
-    if (!xx.is_critical() || (chain.is_ring() && chain.twist != 0.0)) {
-        return std::nullopt;
+std::string block_refusal(const std::vector<int>& block) {
+    if (!fermion::is_one_piece(block)) {
+        return "only blocks of one piece are covered by this route";
     }
-    const bool ring = chain.is_ring();
-    const bool energy = id == QuantityId::ground_energy_per_site;
-    if (xx.field == 0.0L) {
-        if (energy) {
-            return Approach{Approach::Law::power, ring ? 2.0 : 1.0};
-        }
-        return ring && id == QuantityId::gap ? std::optional(Approach{Approach::Law::power, 1.0})
-                                             : std::nullopt;
-    }
-    if (energy) {
-        return Approach{Approach::Law::envelope, ring ? 2.0 : 1.0};
-    }
-    return id == QuantityId::magnetization ? std::optional(Approach{Approach::Law::envelope, 1.0})
-                                           : std::nullopt;
+    return static_cast<int>(block.size()) <= fermion::longest_block
+               ? ""
+               : fmt::format("blocks of more than {} sites are not covered",
+                             fermion::longest_block);
 }
 
-Reference answer(const XxChain& chain, const Query& query) {
-    switch (query.spec->id) {
-        case QuantityId::ground_energy_per_site:
-            return energy_per_site(chain);
-        case QuantityId::magnetization:
-            return magnetization(chain);
-        case QuantityId::susceptibility:
-            return susceptibility(chain);
-        case QuantityId::gap:
-            return gap(chain);
-        case QuantityId::fermi_momentum:
-            return fermi_momentum(chain);
-        case QuantityId::phase:
-            return phase(chain);
-        default:
-            return spin_correlation(chain, query.options);
+/// A determinant of as many rows as there are bonds between, or for zz two contractions.
+int farthest_covered(const Query& query, bool is_closed) {
+    if (query.spec->id == QuantityId::string_order || query.options.axes != Axes::zz) {
+        return fermion::farthest_determinant;
     }
+    return is_closed ? fermion::farthest_closed : fermion::farthest_contraction;
 }
 
-std::string refusal(const Query& query) {
+std::string refusal(const Query& query, const InfiniteChain& chain, bool is_closed) {
     const std::string& instead = query.spec->on_infinite;
-    if (query.spec->where != Where::finite) {
-        return fermion::beyond_free_fermions(query);
+    if (query.spec->where == Where::finite) {
+        return instead.empty()
+                   ? "has no meaning on the infinite chain"
+                   : fmt::format("has no meaning on the infinite chain; {} has", instead);
     }
-    return instead.empty() ? "has no meaning on the infinite chain"
-                           : fmt::format("has no meaning on the infinite chain; {} has", instead);
+    if (query.options.sector) {
+        return "a sector of the user's has no meaning on the infinite chain";
+    }
+    switch (query.spec->id) {
+        case QuantityId::entanglement_entropy:
+            return block_refusal(query.options.block);
+        case QuantityId::fermi_momentum:
+            return chain.alternating ? "with two sites a cell k has no unique meaning" : "";
+        case QuantityId::string_order:
+        case QuantityId::spin_correlation: {
+            const int most = farthest_covered(query, is_closed);
+            return reach(query.options) <= most
+                       ? ""
+                       : fmt::format("distances above {} are not covered here", most);
+        }
+        default:
+            return "";
+    }
+}
+
+/// Determinants dominate.
+double estimated_seconds(const Query& query, bool is_closed) {
+    double seconds = 1e-3;
+    const bool is_string = query.spec->id == QuantityId::string_order;
+    if (is_string || query.spec->id == QuantityId::spin_correlation) {
+        const double farthest = reach(query.options);
+        seconds += is_closed ? 1e-7 * farthest : 1e-6 * farthest * farthest;
+        if (is_string || query.options.axes != Axes::zz) {
+            const auto count =
+                static_cast<double>(query.options.distance.size() + query.options.pairs.size());
+            seconds += 8e-9 * count * farthest * farthest * farthest;
+        }
+    }
+    if (query.spec->id == QuantityId::entanglement_entropy) {
+        const auto sites = static_cast<double>(query.options.block.size());
+        seconds += 2e-6 * sites * sites + 1e-7 * sites * sites * sites;
+    }
+    return seconds;
 }
 
 Coverage plan_limit(const Batch& batch) {
     if (batch.problems.empty()) {
         return refuse_all(batch, "no problem was given");
     }
-    const Recognised recognised = recognise(batch.problems.front());
-    if (!recognised.chain) {
-        return refuse_all(batch, recognised.refusal);
+    const auto chain = fermion::recognise_infinite(batch.problems.front());
+    if (!chain) {
+        return refuse_all(batch, chain.error());
     }
-    if (batch.problems.front().temperature) {
-        return refuse_all(batch, "temperatures are not covered by this route");
-    }
-    constexpr double seconds_per_answer = 2e-6;
+    const bool is_closed = chain->is_uniform_xx() && !batch.problems.front().temperature;
     Coverage coverage;
     for (const Query& query : batch.queries) {
-        coverage.refusal.push_back(refusal(query));
+        coverage.refusal.push_back(refusal(query, *chain, is_closed));
+        if (coverage.refusal.back().empty()) {
+            coverage.seconds +=
+                estimated_seconds(query, is_closed) * static_cast<double>(batch.problems.size());
+        }
     }
-    coverage.seconds =
-        seconds_per_answer * static_cast<double>(batch.problems.size() * batch.queries.size());
     return coverage;
 }
 
@@ -259,20 +283,21 @@ Answers evaluate_limit(const Batch& batch, const Context& context) {
         RouteId::limit, batch, plan_limit(batch), [&](std::size_t p, const Query& query) -> Answer {
             poll(context);
             const Problem& problem = batch.problems[p];
-            const XxChain chain = *recognise(problem).chain;
-            Reference reference = answer(chain, query);
-            reference.approach = approach(chain, problem.chain, query.spec->id);
-            return reference;
+            const auto bands = fermion::make_bands(*fermion::recognise_infinite(problem));
+            return answer(*bands, problem, query);
         });
 }
 
 }  // namespace
 
 const Route& limit_route() {
-    static const Route route{.id = RouteId::limit,
-                             .sentence = "closed forms of the infinite XX chain in a field",
-                             .plan = plan_limit,
-                             .evaluate = evaluate_limit};
+    static const Route route{
+        .id = RouteId::limit,
+        .sentence =
+            "infinite XX, XY, Ising and alternating XX chains in a field, by closed forms "
+            "and integrals over momenta",
+        .plan = plan_limit,
+        .evaluate = evaluate_limit};
     return route;
 }
 

@@ -1,17 +1,23 @@
 #pragma once
 
+#include <functional>
 #include <optional>
+#include <vector>
 
 #include "chainmark/fermion/answers.hpp"
-#include "chainmark/fermion/ground_space.hpp"
+#include "chainmark/fermion/ground_mixture.hpp"
 #include "chainmark/reference/quantity.hpp"
 
 namespace chainmark::fermion {
 
+/// What an operator does not change: the total Sz, or no more than the parity of the up count.
+enum class Keeps { sz, parity, nothing };
+
 /// Answers to queries at one field of a solved chain. The solution and the context must outlive it.
 class Point {
 public:
-    Point(const Solution& solution, const Problem& problem, const Context& context);
+    /// `window`: the ground window of the problem.
+    Point(const Solution& solution, const Problem& problem, double window, const Context& context);
 
     /// The query must be one that the route covers.
     Answer answer(const Query& query);
@@ -19,13 +25,28 @@ public:
 private:
     Answer ground_energy(bool per_site);
     Answer gap();
-    Answer lowest_levels(std::int64_t count);
+    Answer sector_gap(const Labels& wanted);
+    Answer lowest_levels(std::int64_t count, const Labels& wanted);
     Answer magnetization();
+    Answer mean_magnetization();
     Answer local_magnetization(Axis axis);
     Answer susceptibility();
     Answer jump_fields();
-    Answer spin_correlation(const Options& options);
+    Answer correlation(QuantityId id, const Options& options);
+    Answer entropy(const Options& options);
     Answer mode_energies(Parity parity);
+
+    using Measured = std::function<std::vector<Average>(const Mixture&)>;
+
+    /// True where every state of the ground space has a parity of its own, or, for operators that
+    /// keep Sz where it is conserved, an up count of its own: operators are then diagonal between
+    /// them.
+    bool diagonal_between_states(Keeps keeps) const;
+
+    std::optional<Range> range_of(const Measured& measured, Keeps keeps) const;
+
+    /// Averages over the ground space with their range, where it is known.
+    Reference averaged(const Measured& measured, Keeps keeps) const;
 
     /// The class whose modes are asked for; nothing where the ground space holds both.
     std::optional<UpCount> resolve(Parity parity) const;
@@ -43,6 +64,7 @@ private:
     const Context& context_;
     Levels levels_;
     GroundSpace ground_;
+    GroundMixture mixture_;
 };
 
 }  // namespace chainmark::fermion

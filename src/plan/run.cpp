@@ -247,7 +247,7 @@ std::vector<CaseResult> finish(State& state) {
                 result.verdict = worse(result.verdict, quantity.comparison.verdict);
             }
         }
-        result.trends = size_trends(result);
+        result.trends = case_trends(result);
     }
     return std::move(state.results);
 }

@@ -51,7 +51,8 @@ struct Plan::Work {
 /// "7.2 KiB", "31 MiB", "1.6 GiB".
 std::string size_text(double bytes);
 
-/// Trends of every quantity that has the infinite chain beside it.
-std::vector<Trend> size_trends(const CaseResult& result);
+/// Trends of every quantity: over sizes beside the infinite chain, and of the infinite chain
+/// towards its critical fields.
+std::vector<Trend> case_trends(const CaseResult& result);
 
 }  // namespace chainmark

@@ -80,6 +80,7 @@ const std::array<QuantitySpec, 24> table = {{
      .sentence = "entropy of the sites of `block` in the ground state, or in the lowest state of a "
                  "`sector`: `order` 1 -Tr rho ln rho, n >= 2 ln(Tr rho^n)/(1-n); in nats, or in "
                  "bits with `log` = 2",
+     .where = Where::both,
      .options = {OptionId::block, OptionId::order, OptionId::log, OptionId::sector}},
     {.id = QuantityId::energy,
      .name = "energy",

@@ -42,6 +42,8 @@ struct Route {
     std::string_view sentence;
     Coverage (*plan)(const Batch& batch);
     Answers (*evaluate)(const Batch& batch, const Context& context);
+    std::string_view lacks = {};  ///< what this build leaves out, in words; empty: nothing
+    bool encloses = false;        ///< gives enclosures where Context::digits is above 15
 };
 
 /// A coverage that refuses every query of `batch` for the same reason.

@@ -74,12 +74,43 @@ std::string to_string(RouteId route);
 /// How a finite chain's value comes near the infinite one's.
 struct Approach {
     enum class Law {
-        power,     ///< |difference| ~ L^-exponent, sizes of one parity
-        envelope,  ///< |difference| <= c L^-exponent, oscillating below: c is reported, nothing
-                   ///< fitted
+        power,        ///< |difference| ~ L^-exponent, sizes of one parity
+        envelope,     ///< |difference| <= c L^-exponent, oscillating below: c is reported, nothing
+                      ///< fitted
+        exponential,  ///< |difference| ~ exp(-L/decay_length), times some power of L
     };
+
+    /// A number of the infinite chain that the leading difference holds:
+    ///   number = factor * lim L^power (value - limit), with `surface` once a term ~ L^(power - 1)
+    ///   of unknown size is taken off.
+    struct Amplitude {
+        std::string name;  ///< "central_charge", "velocity"
+        double factor = 0.0;
+        int power = 0;
+        bool surface = false;
+        double expected = 0.0;
+    };
+
     Law law = Law::power;
     double exponent = 0.0;
+    double decay_length = 0.0;
+    bool even_sizes_only = false;             ///< odd sizes follow another law
+    std::optional<Amplitude> amplitude = {};  ///< for even sizes
+};
+
+/// |value - at_point| ~ distance^exponent as the field comes near a critical one from one side.
+struct CriticalLaw {
+    double field = 0.0;     ///< |h| at the critical point
+    double distance = 0.0;  ///< ||h| - field|
+    bool below = true;      ///< |h| < field
+    double at_point = 0.0;  ///< the value at the critical point; 0 where it diverges
+    double exponent = 0.0;
+};
+
+/// A real number known to lie within `radius` of `mid`: decimal numbers, both exact as written.
+struct Enclosure {
+    std::string mid;
+    std::string radius;
 };
 
 /// A value by one route, with an absolute error bound on each element.
@@ -93,6 +124,8 @@ struct Reference {
     std::vector<Labels> labels;        ///< level lists: one a level, or empty
     std::vector<Skipped> skipped;      ///< what was left out by proof; empty: everything was solved
     std::optional<Approach> approach;  ///< route `limit` beside a finite chain
+    std::optional<CriticalLaw> critical;  ///< route `limit` near a critical field
+    std::vector<Enclosure> enclosure;     ///< one per element of value.data, or empty
     RouteId route = RouteId::sector;
     double seconds = 0.0;
 };

@@ -90,6 +90,16 @@ Json bound_json(const Reference& reference) {
     });
 }
 
+Json enclosure_json(const Reference& reference) {
+    return shaped(reference.value, [&](std::size_t i) -> Json {
+        if (i >= reference.enclosure.size()) {
+            return nullptr;
+        }
+        const auto& [mid, radius] = reference.enclosure[i];
+        return {{"mid", mid}, {"radius", radius}};
+    });
+}
+
 Json range_json(const Reference& reference) {
     if (!reference.range) {
         return nullptr;
@@ -140,6 +150,9 @@ Json reference_json(const Reference& reference) {
     add_value(json, reference.value);
     json["bound"] = bound_json(reference);
     json["basis"] = to_string(reference.basis);
+    if (!reference.enclosure.empty()) {
+        json["enclosure"] = enclosure_json(reference);
+    }
     json["seconds"] = finite_or_null(reference.seconds);
     if (reference.complete) {
         json["completeness"] = to_string(*reference.complete);

@@ -93,6 +93,21 @@ std::string own_value(const Reference& reference, std::size_t element) {
            fmt::format(" ({})", to_string(reference.basis));
 }
 
+/// The certified digits of the first few elements.
+std::string enclosure_below(const QuantityResult& result) {
+    std::string lines;
+    for (const Reference& reference : result.references) {
+        std::size_t shown = 0;
+        for (const Enclosure& enclosure : reference.enclosure) {
+            if (++shown > most_elements) {
+                break;
+            }
+            lines += note(fmt::format("{} +- {} (enclosure)", enclosure.mid, enclosure.radius));
+        }
+    }
+    return lines;
+}
+
 std::string reason_below(const QuantityResult& result) {
     // Where no route answered, the table's last lines say why.
     if (!is_bad(result.comparison.verdict) || result.references.empty()) {
@@ -148,6 +163,7 @@ std::string lines_below(const QuantityResult& result) {
         lines += array_below("", result.references.front());
         lines += total_sz_below(result.references.front());
     }
+    lines += enclosure_below(result);
     if (result.infinite) {
         lines += array_below("infinite chain", *result.infinite);
     }

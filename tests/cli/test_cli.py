@@ -1,8 +1,10 @@
 """Drives the built program from outside: usage: test_cli.py PROGRAM [unittest arguments]."""
 
 import csv
+import decimal
 import io
 import json
+import math
 import os
 import pathlib
 import re
@@ -103,7 +105,7 @@ class CommandLine(Cli):
     def test_missing_and_repeated_values_of_options(self):
         ring = self.write("ring.toml", RING)
         for option, form in [("--json", "FILE"), ("--csv", "FILE"), ("--set", "KEY=VALUE"),
-                             ("--only", "GLOB"), ("--threads", "N"), ("--memory", "GiB")]:
+                             ("--only", "GLOB"), ("--threads", "N"), ("--memory", "GiB"), ("--digits", "N")]:
             self.refused("run", ring, option, says=f"{option} has no value; expected .*{form}")
             self.refused("run", ring, option, "--quiet", says=f"{option}: '--quiet' (looks|is not)")
         self.refused("run", ring, "--set", "sites=6", "--set", says="--set has no value")
@@ -120,6 +122,8 @@ class CommandLine(Cli):
             self.refused("run", ring, option, value, says=option)
         self.refused("run", ring, "--threads", "x",
                      says="--threads: 'x' is not a whole number from 1 to 4096")
+        self.refused("run", ring, "--digits", "0",
+                     says="--digits: '0' is not a whole number from 1 to 1000")
         self.refused("run", ring, "--memory", "x",
                      says="--memory: 'x' is not a number of GiB above 0")
         done = self.call("run", ring, "--threads", "010", "--memory", "0.5", "--json", "-", code=0)
@@ -132,6 +136,35 @@ class CommandLine(Cli):
         self.assertEqual([c["case"] for c in json.loads(done.stdout)["cases"]], [ring])
         self.assertIn("ring of 7", self.call("show", "terms", "--set", "sites=7", ring,
                                              code=0).stdout)
+
+    def test_certified_digits(self):
+        """-1/sin(pi/8) is -sqrt(4 + 2 sqrt(2)), here by whole numbers."""
+        ring = self.write("ring.toml", RING.replace("[0.1, 0.3]", "0.1"))
+        routes = json.loads(self.call("show", "routes", "--json", "-", code=0).stdout)
+        if any("certified digits" in route.get("lacks", "") for route in routes):
+            self.refused("run", ring, "--digits", "40", says="--digits: 40; at most 15")
+            return
+        done = self.call("run", ring, "--set", "sites=8", "--only", "ground_energy", "--digits", "40",
+                         "--json", "-", code=0)
+        quantity = json.loads(done.stdout)["cases"][0]["points"][0]["quantities"][0]
+        self.assertEqual(quantity["verdict"], "agree")
+        fermion = [r for r in quantity["references"] if r["route"] == "fermion"][0]
+        self.assertEqual(fermion["basis"], "enclosure")
+        scale = 10 ** 60
+        root = math.isqrt(4 * scale ** 2 + 2 * scale * math.isqrt(2 * scale ** 2))
+        with decimal.localcontext() as context:
+            context.prec = 80
+            expected = decimal.Decimal(-root) / scale
+            error = abs(decimal.Decimal(fermion["enclosure"]["mid"]) - expected)
+            radius = decimal.Decimal(fermion["enclosure"]["radius"])
+            self.assertLessEqual(error, radius)
+            self.assertLess(radius, decimal.Decimal("1e-39"))
+        others = [r for r in quantity["references"] if r["route"] != "fermion"]
+        self.assertTrue(others)
+        self.assertTrue(all("enclosure" not in r for r in others))
+        text = self.call("run", ring, "--set", "sites=8", "--only", "ground_energy", "--digits", "40",
+                         code=0).stdout
+        self.assertIn(f"{fermion['enclosure']['mid']} +- {fermion['enclosure']['radius']}", text)
 
     def test_only(self):
         ring = self.write("ring.toml", RING)

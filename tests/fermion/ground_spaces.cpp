@@ -1,4 +1,7 @@
 #include <algorithm>
+#include <optional>
+#include <set>
+#include <utility>
 
 #include "fermion/support.hpp"
 
@@ -34,6 +37,36 @@ Expected expect(const Model& model, double window) {
     return e;
 }
 
+/// Where every ground state has an up count of its own, operators that keep it are diagonal between
+/// them: smallest and largest average of a diagonal operator. Nothing elsewhere.
+template <class Diagonal>
+std::optional<std::pair<double, double>> range_of(const Expected& e,
+                                                  int sites,
+                                                  Diagonal&& diagonal) {
+    std::set<int> counts;
+    std::pair<double, double> range = {1e300, -1e300};
+    for (int n = 0; n < e.dimension; ++n) {
+        const em::Spectrum single{e.spectrum.energies.segment(n, 1), e.spectrum.states.col(n)};
+        const auto mean = [&](auto&& f) { return em::average(single, 1, f); };
+        counts.insert(static_cast<int>(std::lround(
+            mean([&](int state) { return em::total_sz(state, sites) + sites / 2.0; }))));
+        range.first = std::min(range.first, mean(diagonal));
+        range.second = std::max(range.second, mean(diagonal));
+    }
+    return static_cast<int>(counts.size()) == e.dimension ? std::optional(range) : std::nullopt;
+}
+
+void check_range(const Reference& found,
+                 int element,
+                 const std::optional<std::pair<double, double>>& expected,
+                 Allowed allowed) {
+    REQUIRE(found.range.has_value() == expected.has_value());
+    if (expected) {
+        CHECK_NEAR(found.range->at(at(element)).first, expected->first, allowed);
+        CHECK_NEAR(found.range->at(at(element)).second, expected->second, allowed);
+    }
+}
+
 void check_sz(const Model& model, const Problem& problem, const Expected& e) {
     const int sites = model.chain.length();
     const Reference local = fermion(problem, QuantityId::local_magnetization);
@@ -45,7 +78,12 @@ void check_sz(const Model& model, const Problem& problem, const Expected& e) {
                    angle(local, at(j), e.rounding, e.gap > 0 ? e.gap : 1.0));
     }
     CHECK(local.degeneracy == e.dimension);
-    CHECK(local.range.has_value() == (e.dimension == 1));
+    for (int j = 0; j < sites; ++j) {
+        check_range(local,
+                    j,
+                    range_of(e, sites, [&](int state) { return em::sz(state, j); }),
+                    angle(local, at(j), e.rounding, e.gap > 0 ? e.gap : 1.0));
+    }
     const Reference m = fermion(problem, QuantityId::magnetization);
     const auto per_site = [&](int state) { return em::total_sz(state, sites) / sites; };
     CHECK_NEAR(value(m),
@@ -77,8 +115,18 @@ void check_szsz(const Model& model, const Problem& problem, const Expected& e, b
         CHECK_NEAR(found.value.real_at(at(r)),
                    mean,
                    angle(found, at(r), e.rounding, e.gap > 0 ? e.gap : 1.0));
+        const auto product = [&](int state) {
+            double sum = 0.0;
+            for (int i = 0; i < pairs; ++i) {
+                sum += em::sz(state, i) * em::sz(state, (i + r) % sites) / pairs;
+            }
+            return sum;
+        };
+        check_range(found,
+                    r,
+                    connected ? std::nullopt : range_of(e, sites, product),
+                    angle(found, at(r), e.rounding, e.gap > 0 ? e.gap : 1.0));
     }
-    CHECK(found.range.has_value() == (e.dimension == 1 && !connected));
 }
 
 void check_ground_space(const Model& model) {

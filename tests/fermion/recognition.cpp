@@ -24,6 +24,12 @@ std::string refusal(const Problem& problem,
     return coverage.refusal.front();
 }
 
+Problem collected(const TermCollector& collector, const Chain& chain) {
+    return {.chain = chain,
+            .terms = std::make_shared<TermList>(collector.finish().value()),
+            .field = 0.0};
+}
+
 bool mentions(const std::string& text, const char* part) {
     return text.find(part) != std::string::npos;
 }
@@ -32,28 +38,51 @@ TEST_CASE("which routes apply is found from the terms, not from the family") {
     CHECK(refusal(family_problem("xx", {1.0}, ring(6))).empty());
     CHECK(refusal(family_problem("xxz", {1.0, 0.0}, ring(6))).empty());
     CHECK(refusal(family_problem("dimer_xx", {1.0, 0.3}, ring(7))).empty());
-    CHECK(refusal(family_problem("xy", {1.0, 0.0}, open_chain(6))).empty());
+    CHECK(refusal(family_problem("xy", {1.0, 0.3}, open_chain(6))).empty());
+    CHECK(refusal(family_problem("tfim", {1.0}, ring(6))).empty());
+    CHECK(refusal(family_problem("heisenberg", {1.0}, open_chain(2))).empty());
 }
 
 TEST_CASE("a refusal names the first offending string and the reason") {
     const std::string heisenberg = refusal(family_problem("heisenberg", {1.0}, ring(6)));
     CHECK(mentions(heisenberg, "Sz_0 Sz_1"));
     CHECK(mentions(heisenberg, "interaction"));
-    const std::string ising = refusal(family_problem("tfim", {1.0}, ring(6)));
-    CHECK(mentions(ising, "S+_0 S+_1"));
-    CHECK(mentions(ising, "up spins"));
     Model far = xx_model(open_chain(4), 1.0);
     TermCollector collector(far.chain);
     const std::vector<PlacedMatrix> hop = {{0, SiteMatrix::raising()}, {2, SiteMatrix::lowering()}};
     collector.add(1.0, hop);
     collector.add_conjugate(1.0, hop);
-    const Problem problem{.chain = far.chain,
-                          .terms = std::make_shared<TermList>(collector.finish().value()),
-                          .field = 0.0};
-    CHECK(mentions(refusal(problem), "S+_0 S-_2 joins sites that are not neighbours"));
+    CHECK(mentions(refusal(collected(collector, far.chain)), "S+_0 S-_2 joins sites 0 and 2"));
+    TermCollector along_x(far.chain);
+    along_x.add(1.0, {{1, SiteMatrix::sz()}});
+    along_x.add(1.0, {{2, SiteMatrix::sx()}});
+    CHECK(mentions(refusal(collected(along_x, far.chain)), "S+_2 changes the parity"));
+    TermCollector four(far.chain);
+    four.add(1.0,
+             {{0, SiteMatrix::sx()},
+              {1, SiteMatrix::sx()},
+              {2, SiteMatrix::sx()},
+              {3, SiteMatrix::sx()}});
+    CHECK(mentions(refusal(collected(four, far.chain)), "S+_0 S+_1 S+_2 S+_3 is an interaction"));
 }
 
-TEST_CASE("an end-to-end bond closes a ring and is refused on an open chain") {
+TEST_CASE("strings of Sz that miss no site, one site, or go round the outside are quadratic") {
+    const Chain chain = open_chain(3);
+    TermCollector collector(chain);
+    collector.add(1.0, {{0, SiteMatrix::sz()}, {2, SiteMatrix::sz()}});
+    collector.add(1.0, {{0, SiteMatrix::sz()}, {1, SiteMatrix::sz()}, {2, SiteMatrix::sz()}});
+    collector.add(1.0, {{0, SiteMatrix::sx()}, {1, SiteMatrix::sx()}, {2, SiteMatrix::sz()}});
+    const fermion::QuadraticForm form =
+        fermion::recognise(chain, collector.finish().value()).value();
+    // Sz_0 Sz_2 = -P (n_1 - 1/2)/2, Sz_0 Sz_1 Sz_2 = -P/8.
+    CHECK(form.onsite_times_parity == std::vector<fermion::Real>{0.0L, -0.5L, 0.0L});
+    CHECK(form.constant_times_parity == -0.125L);
+    REQUIRE(form.bonds.size() == 1);
+    CHECK(form.bonds.front().first == 1);
+    CHECK(form.bonds.front().range == 2);
+}
+
+TEST_CASE("an end-to-end bond closes a ring, and an open chain, too") {
     for (const BoundaryKind boundary : {BoundaryKind::ring, BoundaryKind::open}) {
         const Chain chain{.sites = 5, .boundary = boundary, .twist = 0.0};
         TermCollector collector(chain);
@@ -64,7 +93,7 @@ TEST_CASE("an end-to-end bond closes a ring and is refused on an open chain") {
         const Problem problem{.chain = chain,
                               .terms = std::make_shared<TermList>(collector.finish().value()),
                               .field = 0.0};
-        CHECK(refusal(problem).empty() == chain.is_ring());
+        CHECK(refusal(problem).empty());
     }
 }
 
@@ -96,7 +125,7 @@ TEST_CASE("the form: hops, wrap bond, kind") {
     };
     CHECK(form_of(xx_problem(ring(6), 1.0)).kind == FormKind::uniform_ring);
     CHECK(form_of(xx_problem(ring(6, 0.4), 1.0)).kind == FormKind::uniform_ring);
-    CHECK(form_of(xx_problem(ring(6, pi), 1.0)).wrap == Complex(-0.5));
+    CHECK(form_of(xx_problem(ring(6, pi), 1.0)).bonds.back().hop == Complex(-0.5));
     CHECK(form_of(xx_problem(open_chain(6), 1.0)).kind == FormKind::uniform_open);
     Model broken = xx_model(ring(6), 1.0);
     broken.hop.back() = 0.0;  // a ring without its wrap bond is an open chain

@@ -184,25 +184,17 @@ TEST_CASE("what a route does not know it refuses, with the reason") {
         }
         return reasons;
     };
-    const std::string warm =
-        refused("sites = [6, \"infinite\"]\ntemperature = 0.5\n", "name = \"magnetization\"\n");
-    CHECK(warm ==
-          "temperatures are not covered by this route\n"
-          "temperatures are not covered by this route\n");
     CHECK(refused("sites = 6\nspin = 1\n", "name = \"ground_energy\"\n") == "needs spin 1/2\n");
     CHECK(refused("sites = \"infinite\"\nspin = 1\n", "name = \"magnetization\"\n") ==
           "needs spin 1/2\n");
-    CHECK(refused("sites = 6\n", "name = \"gap\"\nsector = { sz = 1 }\n") ==
-          "a sector of the user's is not covered by this route\n");
-    CHECK(refused("sites = [6, \"infinite\"]\n",
-                  "name = \"spin_correlation\"\naxes = \"xx\"\ndistance = 1\n") ==
-          "only the zz correlation is covered\nonly the zz correlation is covered\n");
-    for (const char* name : {"structure_factor",
-                             "string_order\"\ndistance = 1\nlabel = \"s",
-                             "entanglement_entropy\"\nblock = 3\nlabel = \"s"}) {
-        CHECK(refused("sites = 6\n", "name = \"" + std::string(name) + "\"\n") ==
-              "not covered by this route\n");
-    }
+    CHECK(refused("sites = 6\n", "name = \"gap\"\nsector = { inversion = 1 }\n") ==
+          "a sector of reflection or inversion is not covered by this route\n");
+    CHECK(refused("sites = \"infinite\"\n",
+                  "name = \"spin_correlation\"\naxes = \"xx\"\npairs = [[0, 500]]\n") ==
+          "distances above 400 are not covered here\n");
+    CHECK(refused("sites = 6\n", "name = \"entanglement_entropy\"\nblock = [0, 2, 4]\n") ==
+          "the sites of the block, or all others, must be consecutive: the spins of separate "
+          "intervals are not the fermions of these sites\n");
 }
 
 TEST_CASE("a family without an infinite chain has nothing beside its rings") {
@@ -474,11 +466,57 @@ use = ["fermion", "limit"]
 [[quantity]]
 name = "ground_energy_per_site"
 )")});
-    REQUIRE(results[0].trends.size() == 2);
-    for (const Trend& trend : results[0].trends) {
-        CHECK(trend.trend == "exponent");
-        CHECK(trend.expected == 2.0);
-        CHECK(std::abs(trend.value - 2.0) < 0.1);
+    const std::vector<Trend>& trends = results[0].trends;
+    REQUIRE(trends.size() == 3);
+    int exponents = 0;
+    for (const Trend& trend : trends) {
+        if (trend.trend == "exponent") {
+            ++exponents;
+            CHECK(trend.expected == 2.0);
+            CHECK(std::abs(trend.value - 2.0) < 0.1);
+        } else {
+            CHECK(trend.trend == "central_charge");
+            CHECK(trend.group == "even");
+            CHECK(trend.expected == 1.0);
+            CHECK(std::abs(trend.value - 1.0) < trend.error);
+            CHECK(trend.error < 0.01);
+        }
     }
-    CHECK(results[0].trends[0].group != results[0].trends[1].group);
+    CHECK(exponents == 2);
+    CHECK(trends[0].group != trends.back().group);
+}
+
+TEST_CASE("fields of the infinite chain give exponents next to each critical one") {
+    const auto results = run({parsed(R"(
+[system]
+sites = "infinite"
+[hamiltonian]
+family = "dimer_xx"
+J = 1.0
+delta = 0.5
+h = [0.4, 0.45, 0.48, 0.505, 0.51, 0.52, 0.54, 0.95, 0.97, 0.99, 1.02, 1.05, 1.1]
+[[quantity]]
+name = "magnetization"
+[[quantity]]
+name = "susceptibility"
+[[quantity]]
+name = "gap"
+)")});
+    std::vector<std::string> found;
+    for (const Trend& trend : results[0].trends) {
+        INFO(trend.quantity << ", " << trend.group << ": " << trend.value << " +- " << trend.error);
+        CHECK(trend.trend == "exponent");
+        CHECK(trend.axis == "h");
+        REQUIRE(trend.expected.has_value());
+        CHECK(std::abs(trend.value - *trend.expected) <= trend.error + 1e-12);
+        CHECK(trend.error < 0.05);
+        found.push_back(trend.quantity + " " + trend.group);
+    }
+    const std::vector<std::string> expected = {"magnetization above 0.5",
+                                               "magnetization below 1",
+                                               "susceptibility above 0.5",
+                                               "susceptibility below 1",
+                                               "gap below 0.5",
+                                               "gap above 1"};
+    CHECK(found == expected);
 }

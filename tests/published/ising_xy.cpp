@@ -54,13 +54,13 @@ TEST_CASE("critical Ising rings: E0 = -2/sin(pi/2L), gap 2 tan(pi/4L) [Pf]") {
         CHECK_NEAR(-2 / std::sin(2 * angle), energy, published(12));
         CHECK_NEAR(2 * std::tan(angle), gap, published(12));
         const Problem problem = pauli_ising(ring(sites), 1.0, 1.0);
-        check_ground(matrix_routes(sites), problem, -2 / std::sin(2 * angle), 1);
-        check_by(matrix_routes(sites), problem, QuantityId::gap, {2 * std::tan(angle)});
+        check_ground(all_routes(sites), problem, -2 / std::sin(2 * angle), 1);
+        check_by(all_routes(sites), problem, QuantityId::gap, {2 * std::tan(angle)});
     }
     // the second excitation, two quasiparticles: 8 sin(pi/2L) above the ground state [Pf, BG]
     for (const int sites : {6, 8, 10}) {
         const double ground = -2 / std::sin(pi / (2 * sites));
-        check_by(matrix_routes(sites),
+        check_by(all_routes(sites),
                  pauli_ising(ring(sites), 1.0, 1.0),
                  QuantityId::levels,
                  {ground,
@@ -83,10 +83,10 @@ TEST_CASE("critical Ising rings: magnetization and correlations along the field 
     for (const int sites : {8, 10}) {
         const Problem problem = pauli_ising(ring(sites), 1.0, 1.0);
         const double m = critical_sz(sites);
-        check_by(matrix_routes(sites), problem, QuantityId::magnetization, {m});
+        check_by(all_routes(sites), problem, QuantityId::magnetization, {m});
         Options options = distances({1, 2, 3});
         options.connected = true;
-        check_by(matrix_routes(sites),
+        check_by(all_routes(sites),
                  problem,
                  QuantityId::spin_correlation,
                  {critical_zz(sites, 1), critical_zz(sites, 2), critical_zz(sites, 3)},
@@ -101,7 +101,7 @@ TEST_CASE("critical open Ising chains: E0 = 1 - 1/sin(pi/(4L+2)) [BG]") {
                                         {10, -12.381489999655}}) {
         const double expected = 1 - 1 / std::sin(pi / (2 * (2 * sites + 1)));
         CHECK_NEAR(expected, energy, published(12));
-        check_ground(matrix_routes(sites), pauli_ising(open_chain(sites), 1.0, 1.0), expected, 1);
+        check_ground(all_routes(sites), pauli_ising(open_chain(sites), 1.0, 1.0), expected, 1);
     }
 }
 
@@ -119,9 +119,8 @@ TEST_CASE("Ising rings on both sides of the transition [Pf]") {
         const double odd = lowest_level(modes, UpCount::odd);
         CHECK_NEAR(even, energy, published(12));
         const Problem problem = pauli_ising(ring(sites), 1.0, hp);
-        check_by(matrix_routes(sites), problem, QuantityId::levels, {even, odd}, count(2));
-        const Reference found =
-            check_by(matrix_routes(sites), problem, QuantityId::gap, {odd - even});
+        check_by(all_routes(sites), problem, QuantityId::levels, {even, odd}, count(2));
+        const Reference found = check_by(all_routes(sites), problem, QuantityId::gap, {odd - even});
         CHECK(found.degeneracy == 1);
     }
 }
@@ -129,13 +128,13 @@ TEST_CASE("Ising rings on both sides of the transition [Pf]") {
 TEST_CASE("Ising and XY rings: whole spectra from the two parity sectors [Pf, LSM]") {
     for (const int sites : {3, 4, 5, 6, 7, 8}) {
         for (const double hp : {0.4, 1.0, 1.7, -0.8}) {
-            check_by(matrix_routes(sites),
+            check_by(all_routes(sites),
                      pauli_ising(ring(sites), 1.0, hp),
                      QuantityId::spectrum,
                      all_levels(pauli_modes(sites, 1.0, hp)));
         }
         for (const double j : {1.0, -1.0}) {
-            check_by(matrix_routes(sites),
+            check_by(all_routes(sites),
                      family_problem("xy", {j, 0.6}, ring(sites), 0.35),
                      QuantityId::spectrum,
                      all_levels({sites, j, 0.6, 0.35}));
@@ -163,7 +162,7 @@ TEST_CASE("XY rings: the lowest level of each parity [LSM]") {
         const Problem problem = family_problem("xy", {1.0, gamma}, ring(sites), field);
         const std::vector<double> expected = {std::min(lowest_even, lowest_odd),
                                               std::max(lowest_even, lowest_odd)};
-        for (const Route& route : matrix_routes(sites)) {
+        for (const Route& route : all_routes(sites)) {
             const Reference found =
                 check_by({route}, problem, QuantityId::levels, expected, count(2));
             if (route.id == RouteId::sector) {  // dense knows no labels
@@ -181,14 +180,14 @@ TEST_CASE("XY rings at the factorizing field: E0 = -|J| L/2, twofold [KTM, exact
         const double field = std::sqrt(1 - gamma * gamma);
         for (const int sites : {4, 6, 8, 10}) {
             for (const double j : {1.0, -1.0}) {
-                check_ground(matrix_routes(sites),
+                check_ground(all_routes(sites),
                              family_problem("xy", {j, gamma}, ring(sites), field),
                              -sites / 2.0,
                              2);
             }
         }
         for (const int sites : {5, 7, 9}) {
-            check_ground(matrix_routes(sites),
+            check_ground(all_routes(sites),
                          family_problem("xy", {-1.0, gamma}, ring(sites), field),
                          -sites / 2.0,
                          2);
@@ -210,7 +209,7 @@ TEST_CASE("factorizing field: the products (|a> +- |b>) of both parities average
         const auto combination = [&](double sign) {
             return c / 2 * (1 + sign * std::pow(c, sites - 2)) / (1 + sign * std::pow(c, sites));
         };
-        check_by(matrix_routes(sites),
+        check_by(all_routes(sites),
                  family_problem("xy", {1.0, gamma}, ring(sites), std::sqrt(1 - gamma * gamma)),
                  QuantityId::magnetization,
                  {(combination(1.0) + combination(-1.0)) / 2});

@@ -188,6 +188,26 @@ TEST_CASE("level lists carry completeness and sectors, jump fields the total Sz"
     CHECK(second["total_sz"].dump() == "[-1.0,0.0,1.0]");
 }
 
+TEST_CASE("certified digits are texts, one pair an element") {
+    SampleRun run = sample_run({8}, {"ground_energy", "spin_correlation"});
+    Reference plain = reference(RouteId::sector, Value::number(0.5), 1e-15);
+    Reference certified = reference(RouteId::fermion, Value::number(0.5), 0.0, Basis::enclosure);
+    certified.enclosure = {{"0.500000000000000000001", "3e-31"}};
+    add_point(run, 8, 0.0, 0, {certified, plain}, Verdict::agree);
+    Reference list = reference(RouteId::fermion, Value::array({0.5, 0.25}), 0.0, Basis::enclosure);
+    list.enclosure = {{"0.5", "1e-40"}, {"0.25", "0"}};
+    add_point(run, 8, 0.0, 1, {list}, Verdict::single);
+    const Json json = parsed(run);
+    const Json& references = first_quantity(json)["references"];
+    CHECK(references[0]["basis"] == "enclosure");
+    CHECK(references[0]["enclosure"].dump() ==
+          R"({"mid":"0.500000000000000000001","radius":"3e-31"})");
+    CHECK_FALSE(references[1].contains("enclosure"));
+    const Json& second = json["cases"][0]["points"][1]["quantities"][0]["references"][0];
+    CHECK(second["enclosure"].dump() ==
+          R"([{"mid":"0.5","radius":"1e-40"},{"mid":"0.25","radius":"0"}])");
+}
+
 TEST_CASE("complex numbers, matrices and texts") {
     SampleRun run = sample_run({8}, {"spin_correlation", "phase"});
     Value matrix = Value::array({0.0, 0.0, 0.0, 0.0});
