@@ -36,7 +36,7 @@ std::optional<State> FixedNumberLevels::next() {
     if (open_.empty()) {
         return std::nullopt;
     }
-    const Open top = open_.top();
+    const OpenNode top = open_.top();
     open_.pop();
     const Node node = nodes_[at(top.node)];
     const int holes = modes_.length() - particles_;

@@ -27,13 +27,6 @@ private:
         int places = 0;
         Real sum = 0.0L;
     };
-    struct Open {
-        Real key;
-        int node;
-        bool operator<(const Open& other) const {
-            return key > other.key || (key == other.key && node > other.node);
-        }
-    };
 
     void push(int before, int row, int places);
 
@@ -43,7 +36,7 @@ private:
     int sea_;  ///< modes below the field: what the flips of a State refer to
     Real base_;
     std::vector<Node> nodes_;
-    std::priority_queue<Open> open_;
+    std::priority_queue<OpenNode> open_;
 };
 
 }  // namespace chainmark::fermion

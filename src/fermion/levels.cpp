@@ -60,7 +60,7 @@ std::optional<State> ClassLevels::next() {
     if (open_.empty()) {
         return std::nullopt;
     }
-    const Open top = open_.top();
+    const OpenNode top = open_.top();
     open_.pop();
     const Node node = nodes_[at(top.node)];
     if (node.largest + 1 < modes_.length()) {

@@ -18,6 +18,16 @@ struct State {
     std::vector<int> flips;  ///< positions in the ascending list of modes
 };
 
+/// A node whose state was not handed out yet. The cheapest comes first out of a priority queue, of
+/// equal ones the one that was made first.
+struct OpenNode {
+    Real key;
+    int node;
+    bool operator<(const OpenNode& other) const {
+        return key > other.key || (key == other.key && node > other.node);
+    }
+};
+
 /// The states of one parity class in ascending order of energy, every one exactly once.
 ///
 /// With a_0 <= a_1 <= ... the |energy - field| of the modes, a state is the sea (all modes below
@@ -53,13 +63,6 @@ private:
         int size = 0;
         Real sum = 0.0L;
     };
-    struct Open {
-        Real key;
-        int node;
-        bool operator<(const Open& other) const {
-            return key > other.key || (key == other.key && node > other.node);
-        }
-    };
 
     /// a_i; the positions are found outward from the field as they are needed.
     Real cost(int i);
@@ -77,7 +80,7 @@ private:
     int below_;               ///< next position to enter `order_` from below the field ...
     int above_;               ///< ... and from above
     std::vector<Node> nodes_;
-    std::priority_queue<Open> open_;
+    std::priority_queue<OpenNode> open_;
 };
 
 }  // namespace chainmark::fermion
